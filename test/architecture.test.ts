@@ -89,7 +89,7 @@ interface Edge {
 function edgesOf(file: string): Edge[] {
   const text = readFileSync(join(SRC, file), 'utf8')
   return [...text.matchAll(IMPORT)].map((match) => {
-    const target = (match[1] ?? match[2] ?? match[3]) as string
+    const target = match[1] ?? match[2] ?? match[3]
     if (!target.startsWith('.')) return { from: file, to: target, bare: true }
     const to = relative(SRC, resolve(SRC, dirname(file), target.replace(/\?.*$/, ''))).replaceAll('\\', '/')
     return { from: file, to, bare: false }

@@ -1,0 +1,117 @@
+import type { Baseline } from '../baseline/baseline.ts'
+import { dwellSummary, type StateDwells } from './state-dwells.ts'
+import { dwellTableOf } from '../dwells/dwell-table-of.ts'
+import type { DwellTable } from '../dwells/dwell-table.ts'
+import { sampleFromDwells } from '../dwells/dwell-sample-of.ts'
+import { onFraction } from '../dwells/on-fraction.ts'
+import type { Estimate } from '../fits/fit.ts'
+import type { Recipe } from '../recipe/recipe.ts'
+import { edgeShare } from '../states/edge-share.ts'
+import { spuriousSafeBins } from '../states/spurious-runs.ts'
+import { statesAt } from '../states/states-at.ts'
+import type { StateFits, ThresholdProduct } from './analysis-products.ts'
+import { lawComparisons, type LawComparison } from './law-comparisons.ts'
+import { fitState } from './fit-row.ts'
+import { flagsOf, type Flag } from './flags.ts'
+import { mixedBins, type MixedBins } from './mixed-bins.ts'
+import type { PreparedTrace } from './prepare-trace.ts'
+import { scanState, type ScanRow } from './scan-state.ts'
+import { rowOf, thresholdOf } from './study-thresholds.ts'
+
+/** Everything known of one state (off or on) at the settled threshold. */
+export interface StateNumbers {
+  readonly dwells: StateDwells
+  readonly fits: StateFits
+  readonly comparisons: readonly LawComparison[]
+  /** Shown law's alpha (or its first parameter) against the shortest fitted dwell. */
+  readonly scan: readonly ScanRow[]
+}
+
+/** The settled numbers of one emitter at one threshold, from the exact list of dwells. */
+export interface BenchNumbers {
+  /** Counts per bin on the levelled axis. */
+  readonly threshold: number
+  readonly countsAboveBaseline: number
+  readonly falseOnPerBin: number
+  readonly falseOffPerBin: number
+  /** Seconds; null where threshold errors make no cutoff worth naming (longer than 10^6 records). */
+  readonly artefactCutoffSeconds: { readonly on: number | null; readonly off: number | null }
+  readonly levels: { readonly offCps: number; readonly onCps: number }
+  readonly baseline: Pick<Baseline, 'method' | 'supportedShare' | 'longestUnsupportedSeconds' | 'status' | 'message'>
+  readonly onFraction: Estimate
+  readonly mixedBins: MixedBins
+  /** [off, on] */
+  readonly states: readonly [StateNumbers, StateNumbers]
+  readonly flags: readonly Flag[]
+}
+
+/** Longer than this many record lengths, an artefact cutoff has no meaning for the record. */
+const MEANINGLESS_RECORDS = 1e6
+
+/** The dwells of a prepared trace at one threshold, pieces cut at gate edges if the recipe asks for one class. */
+export function dwellsAt(
+  prepared: PreparedTrace,
+  product: ThresholdProduct,
+  recipe: Recipe,
+  threshold: number,
+): DwellTable {
+  const row = rowOf(product.table, threshold)
+  return dwellTableOf(statesAt(prepared.levelled, threshold), prepared.levelled, prepared.gateCodes, recipe.dwells.gate, {
+    falseOnPerBin: product.falseOnPerBin[row],
+    falseOffPerBin: product.falseOffPerBin[row],
+  })
+}
+
+/** Settled numbers; cost grows with bins (one pass) and dwells. Deterministic: the seed of the recipe is used. */
+export function benchNumbers(
+  prepared: PreparedTrace,
+  product: ThresholdProduct,
+  recipe: Recipe,
+  wanted: number,
+): BenchNumbers {
+  const { levelled, baseline } = prepared
+  const { table, group } = product
+  const row = rowOf(table, wanted)
+  const threshold = thresholdOf(table, row)
+  const errors = { falseOnPerBin: product.falseOnPerBin[row], falseOffPerBin: product.falseOffPerBin[row] }
+  const dwells = dwellsAt(prepared, product, recipe, threshold)
+  const recordSeconds = levelled.values.length * levelled.binSeconds
+  const meaningful = (seconds: number): number | null =>
+    seconds < MEANINGLESS_RECORDS * recordSeconds ? seconds : null
+
+  const one = (state: 0 | 1): StateNumbers => {
+    const sample = sampleFromDwells(dwells, state, edgeShare(threshold, levelled, state))
+    const fits = fitState(sample, state, spuriousSafeBins(table, group, row, state, errors), recipe, 'all')
+    return {
+      dwells: dwellSummary(dwells, state),
+      fits,
+      comparisons: lawComparisons(fits, sample),
+      scan: scanState(fits, sample, recipe),
+    }
+  }
+  const states: [StateNumbers, StateNumbers] = [one(0), one(1)]
+  const numbers = {
+    threshold,
+    countsAboveBaseline: threshold - levelled.offCounts,
+    ...errors,
+    artefactCutoffSeconds: {
+      on: meaningful(product.artefactCutoffOnSeconds[row]),
+      off: meaningful(product.artefactCutoffOffSeconds[row]),
+    },
+    levels: {
+      offCps: levelled.offCounts / levelled.binSeconds,
+      onCps: levelled.onCounts / levelled.binSeconds,
+    },
+    baseline: {
+      method: baseline.method,
+      supportedShare: baseline.supportedShare,
+      longestUnsupportedSeconds: baseline.longestUnsupportedSeconds,
+      status: baseline.status,
+      message: baseline.message,
+    },
+    onFraction: onFraction(dwells, { ...errors, confidence: recipe.fit.confidence, seed: recipe.goodness.seed }),
+    mixedBins: mixedBins(levelled, table, row),
+    states,
+  }
+  return { ...numbers, flags: flagsOf(numbers, recordSeconds, levelled.binSeconds) }
+}

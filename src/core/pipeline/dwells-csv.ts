@@ -1,0 +1,34 @@
+import { CENSORING, type DwellTable } from '../dwells/dwell-table.ts'
+import { GATE_CLASSES } from '../photons/gate.ts'
+
+const HEADER =
+  'emitter,start_s,duration_s,state,gate_at_start,gate_at_end,entry_age_s,censoring,spurious_probability'
+
+/** RFC 4180 quoting; a leading = + - @ is quoted with an apostrophe so that a spreadsheet does not run it. */
+export function csvText(text: string): string {
+  const safe = /^[=+\-@\t\r]/.test(text) ? `'${text}` : text
+  return /[",\r\n]/.test(safe) ? `"${safe.replaceAll('"', '""')}"` : safe
+}
+
+/** Dwell table as CSV text with a header; units in the column names; durations exact multiples of the bin. */
+export function dwellsCsv(emitter: string, table: DwellTable, withHeader = true): string {
+  const name = csvText(emitter)
+  const lines: string[] = withHeader ? [HEADER] : []
+  const seconds = (bins: number): string => Number((bins * table.binSeconds).toPrecision(12)).toString()
+  for (let row = 0; row < table.rows; row++) {
+    lines.push(
+      [
+        name,
+        Number(table.startSeconds[row].toPrecision(12)).toString(),
+        seconds(table.durationBins[row]),
+        table.state[row] === 1 ? 'on' : 'off',
+        GATE_CLASSES[table.gateAtStart[row]] ?? '',
+        GATE_CLASSES[table.gateAtEnd[row]] ?? '',
+        seconds(table.entryAgeBins[row]),
+        CENSORING[table.censoring[row]] ?? '',
+        table.spuriousProbability[row].toPrecision(3),
+      ].join(','),
+    )
+  }
+  return `${lines.join('\n')}\n`
+}
