@@ -1,0 +1,4 @@
+import { expose } from 'comlink'
+import { analysisService } from './analysis-service.ts'
+
+expose(analysisService())
