@@ -37,7 +37,10 @@ export interface BenchNumbers {
   /** Seconds; null where threshold errors make no cutoff worth naming (longer than 10^6 records). */
   readonly artefactCutoffSeconds: { readonly on: number | null; readonly off: number | null }
   readonly levels: { readonly offCps: number; readonly onCps: number }
-  readonly baseline: Pick<Baseline, 'method' | 'supportedShare' | 'longestUnsupportedSeconds' | 'status' | 'message'>
+  readonly baseline: Pick<
+    Baseline,
+    'method' | 'supportedShare' | 'longestUnsupportedSeconds' | 'status' | 'message'
+  >
   readonly onFraction: Estimate
   readonly mixedBins: MixedBins
   /** [off, on] */
@@ -56,10 +59,16 @@ export function dwellsAt(
   threshold: number,
 ): DwellTable {
   const row = rowOf(product.table, threshold)
-  return dwellTableOf(statesAt(prepared.levelled, threshold), prepared.levelled, prepared.gateCodes, recipe.dwells.gate, {
-    falseOnPerBin: product.falseOnPerBin[row],
-    falseOffPerBin: product.falseOffPerBin[row],
-  })
+  return dwellTableOf(
+    statesAt(prepared.levelled, threshold),
+    prepared.levelled,
+    prepared.gateCodes,
+    recipe.dwells.gate,
+    {
+      falseOnPerBin: product.falseOnPerBin[row],
+      falseOffPerBin: product.falseOffPerBin[row],
+    },
+  )
 }
 
 /** Settled numbers; cost grows with bins (one pass) and dwells. Deterministic: the seed of the recipe is used. */
@@ -109,7 +118,11 @@ export function benchNumbers(
       status: baseline.status,
       message: baseline.message,
     },
-    onFraction: onFraction(dwells, { ...errors, confidence: recipe.fit.confidence, seed: recipe.goodness.seed }),
+    onFraction: onFraction(dwells, {
+      ...errors,
+      confidence: recipe.fit.confidence,
+      seed: recipe.goodness.seed,
+    }),
     mixedBins: mixedBins(levelled, table, row),
     states,
   }

@@ -1,7 +1,13 @@
 import type { Trace } from '../photons/trace.ts'
 import type { Recipe } from '../recipe/recipe.ts'
 import type { ThresholdProduct, TraceProduct } from './analysis-products.ts'
-import { prepareTrace, traceOf, traceProductOf, type PreparedTrace, type RecordInHand } from './prepare-trace.ts'
+import {
+  prepareTrace,
+  traceOf,
+  traceProductOf,
+  type PreparedTrace,
+  type RecordInHand,
+} from './prepare-trace.ts'
 import { groupIndex, studyThresholds } from './study-thresholds.ts'
 import { thresholdByRule } from '../states/threshold-rules.ts'
 

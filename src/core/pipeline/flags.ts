@@ -129,7 +129,8 @@ const EXCESS_CHANCE = 1e-4
 
 function fastFlags(numbers: Numbers, binSeconds: number): Flag[] {
   const { mixedBins } = numbers
-  if (mixedBins.ratio === null || mixedBins.ratio < EXCESS_RATIO || mixedBins.upperTail > EXCESS_CHANCE) return []
+  if (mixedBins.ratio === null || mixedBins.ratio < EXCESS_RATIO || mixedBins.upperTail > EXCESS_CHANCE)
+    return []
   return [
     {
       key: 'between-levels',

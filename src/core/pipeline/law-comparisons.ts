@@ -63,6 +63,7 @@ export function lawComparisons(fits: StateFits, sample: DwellSample): LawCompari
 
 function nested(a: LawName, b: LawName): boolean {
   const inside = (inner: LawName, outer: LawName): boolean =>
-    (inner === 'power' && CUTOFFS.includes(outer)) || (inner === 'exponential' && (CUTOFFS.includes(outer) || outer === 'stretched'))
+    (inner === 'power' && CUTOFFS.includes(outer)) ||
+    (inner === 'exponential' && (CUTOFFS.includes(outer) || outer === 'stretched'))
   return inside(a, b) || inside(b, a)
 }

@@ -46,7 +46,9 @@ export function mixedBins(levelled: LevelledTrace, table: ThresholdTable, row: n
     observed += histogram.counts[k - histogram.first] ?? 0
     const mixed = (gammaP(k + 1, onCounts) - gammaP(k + 1, offCounts)) / span
     expected +=
-      switches * mixed + offBins * Math.exp(lnPoisson(k, offCounts)) + onBins * Math.exp(lnPoisson(k, onCounts))
+      switches * mixed +
+      offBins * Math.exp(lnPoisson(k, offCounts)) +
+      onBins * Math.exp(lnPoisson(k, onCounts))
   }
   return {
     observed,

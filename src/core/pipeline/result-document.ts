@@ -40,8 +40,15 @@ export interface EmitterResult {
     readonly photons: number
     readonly dropped: Readonly<Record<string, number>>
   }
-  readonly levels: { readonly off: { readonly countsPerSecond: number }; readonly on: { readonly countsPerSecond: number } }
-  readonly baseline: { readonly method: string; readonly supportedShare: number; readonly longestUnsupportedSeconds: number }
+  readonly levels: {
+    readonly off: { readonly countsPerSecond: number }
+    readonly on: { readonly countsPerSecond: number }
+  }
+  readonly baseline: {
+    readonly method: string
+    readonly supportedShare: number
+    readonly longestUnsupportedSeconds: number
+  }
   readonly threshold: {
     readonly rule: string
     readonly countsPerBin: number
@@ -68,7 +75,9 @@ function plain({ estimate, low, high }: Estimate): DocumentEstimate {
 function documentFit(fit: Fit): DocumentFit {
   return {
     law: fit.law,
-    parameters: Object.fromEntries(Object.entries(fit.parameters).map(([name, value]) => [name, plain(value)])),
+    parameters: Object.fromEntries(
+      Object.entries(fit.parameters).map(([name, value]) => [name, plain(value)]),
+    ),
     logLikelihood: fit.logLikelihood,
     aicc: fit.aicc,
     weight: fit.weight,
@@ -140,6 +149,10 @@ export function emitterResult(
 }
 
 /** The document of a run. */
-export function resultDocument(version: string, recipe: Recipe, emitters: readonly EmitterResult[]): ResultDocument {
+export function resultDocument(
+  version: string,
+  recipe: Recipe,
+  emitters: readonly EmitterResult[],
+): ResultDocument {
   return { heliograph: { version, recipeHash: recipeHash(recipe), recipe }, emitters }
 }

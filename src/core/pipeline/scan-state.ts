@@ -21,18 +21,20 @@ export function scanState(fits: StateFits, sample: DwellSample, recipe: Recipe):
   const shown = fits.fits[fits.shown]
   if (shown === undefined) return []
   const bins = [...new Set([...SCANNED_BINS, fits.shortest.bins])].sort((a, b) => a - b)
-  return scanShortest(lawNamed(shown.law), sample, bins, { confidence: recipe.fit.confidence }).flatMap((fit) => {
-    const [name, value] = Object.entries(fit.parameters)[0] ?? []
-    return name === undefined || value === undefined || value.estimate === null
-      ? []
-      : [
-          {
-            shortestBins: fit.shortestBins,
-            shortestSeconds: fit.shortestSeconds,
-            parameter: name,
-            value,
-            complete: fit.complete,
-          },
-        ]
-  })
+  return scanShortest(lawNamed(shown.law), sample, bins, { confidence: recipe.fit.confidence }).flatMap(
+    (fit) => {
+      const [name, value] = Object.entries(fit.parameters)[0] ?? []
+      return name === undefined || value === undefined || value.estimate === null
+        ? []
+        : [
+            {
+              shortestBins: fit.shortestBins,
+              shortestSeconds: fit.shortestSeconds,
+              parameter: name,
+              value,
+              complete: fit.complete,
+            },
+          ]
+    },
+  )
 }

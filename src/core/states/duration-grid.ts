@@ -33,7 +33,7 @@ export function columnOf(grid: DurationGrid, m: number): number {
   let high = edges.length - 2
   while (low < high) {
     const middle = (low + high + 1) >> 1
-    if ((edges[middle] as number) <= m) low = middle
+    if (edges[middle] <= m) low = middle
     else high = middle - 1
   }
   return low
