@@ -12,3 +12,11 @@ export interface Trace {
   readonly coverage: Uint8Array | null
   readonly dropped: DroppedCounts
 }
+
+/** The same counts in the narrowest kind that holds them: Uint16 when the largest is below 65536. Empty stays empty. */
+export function fittingCounts(counts: Uint32Array): Uint16Array | Uint32Array {
+  // Bits of the OR reach past 16 exactly when some count does.
+  let bits = 0
+  for (let i = 0; i < counts.length; i++) bits |= counts[i]
+  return bits >>> 16 === 0 ? new Uint16Array(counts) : counts
+}
