@@ -192,10 +192,14 @@ function countHalfByEdges(
   let place = first | 0
   let k = binOfTick(relative + (limit > LOWER_LIMIT ? signed[first] + 2 ** 32 : signed[first]), binTicks)
   const lastStride = (stop - 16) | 0
+  let guess = 0
   let largest = 0
   while (place < stop) {
     const edge = Math.min(Math.ceil((k + 1) * binTicks) - relative, limit) | 0
     const begin = place
+    // A level lasts many bins: most of the last count can be jumped over in one look.
+    const jump = (place + guess) | 0
+    if (jump <= lastStride && signed[jump] < edge) place = jump
     while (place <= lastStride && signed[place + 15] < edge) place = (place + 16) | 0
     if (place <= lastStride) {
       // signed[place + 15] is at or past the edge: four halvings of the 16.
@@ -204,9 +208,11 @@ function countHalfByEdges(
       place = (place + (((signed[place + 1] - edge) >>> 31) << 1)) | 0
       place = (place + ((signed[place] - edge) >>> 31)) | 0
     } else while (place < stop && signed[place] < edge) place = (place + 1) | 0
-    const count = counts[k] + (place - begin)
+    const added = (place - begin) | 0
+    const count = counts[k] + added
     largest |= count
     counts[k] = count
+    guess = (added - (added >> 2)) | 0
     k++
     // After an empty bin, jump over the silence.
     if (place === begin && place < stop)
