@@ -1,0 +1,92 @@
+import { confidentOff, type OffSums } from './confident-off.ts'
+import { fitKnots } from './fit-knots.ts'
+import { type KnotPlan, penaltyWeights } from './stiffness.ts'
+
+/** Where the rounds start, from the histogram of the whole record. */
+export interface LevelStart {
+  /** Off level and signal, counts per bin; signal 0 when there is one level only. */
+  readonly off: number
+  readonly signal: number
+  readonly onShare: number
+}
+
+/** Levels after the rounds, counts per bin. */
+export interface FollowedLevels {
+  readonly lnBaseline: Float64Array
+  readonly variance: Float64Array
+  readonly sums: OffSums
+  readonly signal: number
+  readonly onShare: number
+  readonly rounds: number
+}
+
+const MOST_ROUNDS = 15
+/** Rounds end when neither a supported knot nor the signal moved by more than this share. */
+const SETTLED = 1e-3
+/** Support, in bins, from which a knot counts as seen. */
+export const SUPPORTED_BINS = 5
+
+/**
+ * Rounds of expectation (which bins are confidently off), maximisation (the knots) and update of signal and on share,
+ * until they settle: a baseline that rests on off bins only and admits ignorance through long on-times.
+ *
+ * @param stiffnessSeconds shortest time over which the baseline may bend; null for one constant level
+ */
+export function followLevels(
+  counts: Uint16Array | Uint32Array,
+  unusable: Uint8Array | null,
+  plan: KnotPlan,
+  binSeconds: number,
+  stiffnessSeconds: number | null,
+  start: LevelStart,
+): FollowedLevels {
+  // A level of no counts at all is set to half a count in the record, so that its logarithm exists.
+  const least = 0.5 / Math.max(1, counts.length)
+  const lnOff = Math.log(Math.max(start.off, least))
+  let lnBaseline: Float64Array = new Float64Array(plan.knots).fill(lnOff)
+  let doubt: Float64Array | null = null
+  let { signal, onShare } = start
+  const penalty =
+    stiffnessSeconds === null
+      ? null
+      : penaltyWeights(stiffnessSeconds, plan.knotSeconds, Math.exp(lnOff) / binSeconds)
+  for (let rounds = 1; ; rounds++) {
+    const sums = confidentOff(counts, unusable, plan.binsPerKnot, lnBaseline, doubt, signal, onShare)
+    const fitted =
+      penalty === null
+        ? fitLevel(sums, plan.knots, lnOff, least)
+        : fitKnots(sums.exposure, sums.counts, lnBaseline, penalty.bend, penalty.pull, lnOff)
+    const nextSignal = sums.onBins > 0.5 && signal > 0 ? Math.max(sums.onExcess / sums.onBins, least) : 0
+    let moved = signal > 0 ? Math.abs(nextSignal - signal) / signal : 0
+    for (let j = 0; j < plan.knots; j++)
+      if (sums.support[j] >= SUPPORTED_BINS)
+        moved = Math.max(moved, Math.abs(fitted.lnBaseline[j] - lnBaseline[j]))
+    lnBaseline = fitted.lnBaseline
+    doubt = fitted.variance.map(Math.sqrt)
+    signal = nextSignal
+    // One bin of each kind is added, so that neither share can reach 0 and stay there.
+    onShare = signal > 0 ? (sums.onBins + 1) / (sums.usableBins + 2) : 0
+    if (moved < SETTLED || rounds === MOST_ROUNDS)
+      return { lnBaseline, variance: fitted.variance, sums, signal, onShare, rounds }
+  }
+}
+
+/** One level for all knots: total counts over total exposure. Its ln has variance 1 / counts. */
+function fitLevel(
+  sums: OffSums,
+  knots: number,
+  lnOff: number,
+  least: number,
+): { lnBaseline: Float64Array; variance: Float64Array } {
+  let exposure = 0
+  let counts = 0
+  for (let j = 0; j < knots; j++) {
+    exposure += sums.exposure[j]
+    counts += sums.counts[j]
+  }
+  const ln = exposure > 0 ? Math.log(Math.max(counts / exposure, least)) : lnOff
+  return {
+    lnBaseline: new Float64Array(knots).fill(ln),
+    variance: new Float64Array(knots).fill(1 / Math.max(counts, 0.5)),
+  }
+}
