@@ -1,0 +1,53 @@
+/** Rounded so that the uncertainty keeps two digits; `digits` when there is none. */
+export function roundTo(value: number, uncertainty: number | null, digits = 3): string {
+  if (!Number.isFinite(value)) return value > 0 ? '∞' : '−∞'
+  if (value === 0) return '0'
+  const magnitude = Math.floor(Math.log10(Math.abs(value)))
+  const place =
+    uncertainty !== null && uncertainty > 0 && Number.isFinite(uncertainty)
+      ? Math.floor(Math.log10(uncertainty)) - 1
+      : magnitude - digits + 1
+  const decimals = Math.max(0, Math.min(12, -place))
+  if (magnitude >= 6 || magnitude < -5) return minus(value.toExponential(Math.max(1, digits - 1)))
+  return minus(place > 0 ? String(Number(value.toPrecision(Math.max(1, magnitude - place + 1)))) : value.toFixed(decimals))
+}
+
+function minus(text: string): string {
+  return text.replace('-', '−')
+}
+
+const DURATIONS = [
+  { unit: 's', size: 1 },
+  { unit: 'ms', size: 1e-3 },
+  { unit: 'µs', size: 1e-6 },
+  { unit: 'ns', size: 1e-9 },
+] as const
+
+/** A duration with the unit a reader expects: `20 ms`, `5.3 s`. Null gives `not available`. */
+export function siDuration(seconds: number | null, digits = 3): string {
+  if (seconds === null || Number.isNaN(seconds)) return 'not available'
+  if (seconds === Number.POSITIVE_INFINITY) return '∞'
+  if (seconds === 0) return '0 s'
+  const scale = DURATIONS.find(({ size }) => Math.abs(seconds) >= size * 0.9995) ?? DURATIONS[3]
+  return `${minus(String(Number((seconds / scale.size).toPrecision(digits))))} ${scale.unit}`
+}
+
+/** Estimate and interval as text: `1.52 [1.44, 1.61]`, `> 3.1 s`, `not available`. */
+export function formatEstimate(value: {
+  readonly estimate: number | null
+  readonly low: number | null
+  readonly high: number | null
+  readonly unit: string
+}): { text: string; interval: string } {
+  const { estimate, low, high, unit } = value
+  const suffix = unit === '' ? '' : ` ${unit}`
+  if (estimate === null && low === null && high === null) return { text: 'not available', interval: '' }
+  if (estimate === null && low !== null) return { text: `> ${roundTo(low, null, 2)}${suffix}`, interval: 'bound' }
+  if (estimate === null) return { text: `< ${roundTo(high ?? Number.NaN, null, 2)}${suffix}`, interval: 'bound' }
+  const width = low !== null && high !== null ? (high - low) / 4 : null
+  const one = (x: number | null): string => (x === null ? '∞' : roundTo(x, width))
+  return {
+    text: `${roundTo(estimate, width)}${suffix}`,
+    interval: low === null && high === null ? '' : `[${low === null ? '−∞' : one(low)}, ${one(high)}]`,
+  }
+}
