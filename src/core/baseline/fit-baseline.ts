@@ -1,7 +1,14 @@
 import type { Trace } from '../photons/trace.ts'
 import type { Recipe } from '../recipe/recipe.ts'
 import type { Baseline } from './baseline.ts'
-import { type FollowedLevels, followLevels, type LevelStart, SUPPORTED_BINS } from './follow-levels.ts'
+import {
+  type FollowedLevels,
+  followLevels,
+  type LevelStart,
+  smoothedCounts,
+  SUPPORTED_BINS,
+} from './follow-levels.ts'
+import { levelLikelihood } from './level-likelihood.ts'
 import { type KnotPlan, knotPlan } from './stiffness.ts'
 import { fitTwoPoisson, levelDistance, SEPARABLE_DEVIATIONS, type TwoPoisson } from './two-poisson.ts'
 
@@ -9,6 +16,12 @@ import { fitTwoPoisson, levelDistance, SEPARABLE_DEVIATIONS, type TwoPoisson } f
 const DRIFT_SHARE = 0.1
 /** Two-sided 95 % point of the normal distribution. */
 const BAND_DEVIATIONS = 1.959963984540054
+/** Factor at which the band ends where next to nothing is known. */
+const WIDEST_BAND = 1000
+/** Share of on bins to start from when the whole record is first taken as off. */
+const SELDOM_ON = 0.02
+/** That curve bends this much more slowly than the baseline may, so that it runs below on-times of some length. */
+const CURVE_STIFFER = 10
 /** On bins, in all, below which nothing is known of the on level. */
 const LEAST_ON_BINS = 3
 
@@ -34,57 +47,113 @@ export function fitBaseline(
   const histogram = usableHistogram(counts, unusable)
   if (histogram.bins === 0) return withoutBins(trace, choices)
   const mixture = fitTwoPoisson(histogram.bySize)
+  const moving = knotPlan(counts.length, binSeconds, choices.stiffnessSeconds)
+  const plan = moving ?? { binsPerKnot: counts.length, knots: 1, knotSeconds: counts.length * binSeconds }
   const start: LevelStart = {
     off: mixture.offMean,
+    lnBaseline: null,
     signal: mixture.onMean - mixture.offMean,
     onShare: Math.min(Math.max(mixture.onShare, 1 / (histogram.bins + 2)), 1 - 1 / (histogram.bins + 2)),
   }
-  const moving = knotPlan(counts.length, binSeconds, choices.stiffnessSeconds)
-  const plan = moving ?? { binsPerKnot: counts.length, knots: 1, knotSeconds: counts.length * binSeconds }
-  const follow = (stiffnessSeconds: number | null): FollowedLevels =>
-    followLevels(counts, unusable, plan, binSeconds, stiffnessSeconds, start)
-
-  if (choices.method === 'constant')
-    return describe(trace, plan, follow(null), mixture, 'constant', false, 'Constant: chosen by hand.')
+  const constant = (from: LevelStart, reason: string, automatic: boolean): Baseline => {
+    const levels = followLevels(counts, unusable, plan, binSeconds, null, from)
+    return describe(trace, plan, levels, mixture, { method: 'constant', automatic, reason })
+  }
+  const automatic = choices.method === 'automatic'
+  if (choices.method === 'constant') return constant(start, 'Constant: chosen by hand.', false)
   if (moving === null) {
-    const reason = `Constant: the record of ${counts.length} bins is too short to follow a drift (40 bins are needed).`
-    return describe(trace, plan, follow(null), mixture, 'constant', choices.method === 'automatic', reason)
+    const reason = `Constant: a record of ${counts.length} bins is too short to follow a drift (40 are needed).`
+    return constant(start, reason, automatic)
   }
-  if (choices.method === 'automatic' && mixture.status === 'one-level') {
-    const reason = 'Constant: with one level only there is no signal to compare a drift with.'
-    return describe(trace, plan, follow(null), mixture, 'constant', true, reason)
-  }
-  const drifting = follow(choices.stiffnessSeconds)
-  if (choices.method === 'drifting')
-    return describe(trace, plan, drifting, mixture, 'drifting', false, 'Drifting: chosen by hand.')
+  if (automatic && mixture.status === 'one-level')
+    return constant(start, 'Constant: the counts scatter no more than one steady level would.', true)
+
+  const drifting = followDrift(trace, unusable, plan, choices.stiffnessSeconds, start, histogram)
+  if (!automatic)
+    return describe(trace, plan, drifting, mixture, {
+      method: 'drifting',
+      automatic,
+      reason: 'Drifting: chosen by hand.',
+    })
   const strayCps = strayFromMean(drifting) / binSeconds
   const limitCps = (DRIFT_SHARE * drifting.signal) / binSeconds
+  const onward = { ...start, off: meanLevel(drifting), signal: drifting.signal, onShare: drifting.onShare }
+  if (Number.isNaN(strayCps)) return constant(onward, 'Constant: too few off bins to follow a drift.', true)
   const numbers = `the fitted baseline strays up to ${rate(strayCps)} from its mean`
-  if (strayCps < limitCps) {
-    const reason = `Constant: ${numbers}, less than a tenth of the signal (${rate(limitCps)}).`
-    return describe(trace, plan, follow(null), mixture, 'constant', true, reason)
-  }
-  const reason = `Drifting: ${numbers}, at least a tenth of the signal (${rate(limitCps)}).`
-  return describe(trace, plan, drifting, mixture, 'drifting', true, reason)
+  if (drifting.signal > 0 && strayCps < limitCps)
+    return constant(
+      onward,
+      `Constant: ${numbers}, less than a tenth of the signal (${rate(limitCps)}).`,
+      true,
+    )
+  const reason =
+    drifting.signal > 0
+      ? `Drifting: ${numbers}, at least a tenth of the signal (${rate(limitCps)}).`
+      : `Drifting: ${numbers}, and there is no second level to compare it with.`
+  return describe(trace, plan, drifting, mixture, { method: 'drifting', automatic, reason })
 }
 
-function usableHistogram(
-  counts: Uint16Array | Uint32Array,
+/**
+ * The moving baseline from two starts, the better penalised likelihood kept: the levels of the mixture, right when the
+ * drift is small beside the signal; and the smooth curve through all counts, right when the emitter is seldom on and the drift is what
+ * the mixture took for two levels. When two levels then explain no more than one, there is no signal.
+ */
+function followDrift(
+  trace: Trace,
   unusable: Uint8Array | null,
-): { bySize: Float64Array; bins: number } {
+  plan: KnotPlan,
+  stiffnessSeconds: number,
+  start: LevelStart,
+  histogram: UsableHistogram,
+): FollowedLevels {
+  const { counts, binSeconds } = trace
+  const follow = (from: LevelStart): FollowedLevels =>
+    followLevels(counts, unusable, plan, binSeconds, stiffnessSeconds, from)
+  const plain = follow(start)
+  if (start.signal === 0) return plain
+  const likelihood = (levels: FollowedLevels) =>
+    levelLikelihood(counts, unusable, plan.binsPerKnot, levels.lnBaseline, levels.signal)
+  const curve = smoothedCounts(
+    counts,
+    unusable,
+    plan,
+    binSeconds,
+    CURVE_STIFFER * stiffnessSeconds,
+    histogram.mean,
+  )
+  const smooth = follow({ ...start, off: histogram.mean, lnBaseline: curve, onShare: SELDOM_ON })
+  const [plainFit, smoothFit] = [likelihood(plain), likelihood(smooth)]
+  const better = smoothFit.twoLevels - smooth.penalty > plainFit.twoLevels - plain.penalty
+  const levels = better ? smooth : plain
+  const fit = better ? smoothFit : plainFit
+  // One more parameter, the signal, must earn at least ln(bins) after the switches are paid for.
+  if (levels.signal > 0 && fit.twoLevels - fit.oneLevel > Math.log(histogram.bins)) return levels
+  return follow({ off: histogram.mean, lnBaseline: curve, signal: 0, onShare: 0 })
+}
+
+interface UsableHistogram {
+  readonly bySize: Float64Array
+  readonly bins: number
+  /** Counts per bin. */
+  readonly mean: number
+}
+
+function usableHistogram(counts: Uint16Array | Uint32Array, unusable: Uint8Array | null): UsableHistogram {
   let largest = 0
   for (let i = 0; i < counts.length; i++) if (counts[i] > largest) largest = counts[i]
   const bySize = new Float64Array(largest + 1)
   let bins = 0
+  let sum = 0
   for (let i = 0; i < counts.length; i++) {
     if (unusable !== null && unusable[i] !== 0) continue
     bySize[counts[i]]++
     bins++
+    sum += counts[i]
   }
-  return { bySize, bins }
+  return { bySize, bins, mean: bins > 0 ? sum / bins : 0 }
 }
 
-/** Greatest distance of a supported knot from the mean of the supported knots, counts per bin. */
+/** Greatest distance of a supported knot from the mean of the supported knots, counts per bin; NaN when there is none. */
 function strayFromMean({ lnBaseline, sums }: FollowedLevels): number {
   let sum = 0
   let seen = 0
@@ -98,7 +167,7 @@ function strayFromMean({ lnBaseline, sums }: FollowedLevels): number {
     low = Math.min(low, level)
     high = Math.max(high, level)
   }
-  return seen === 0 ? 0 : Math.max(high - sum / seen, sum / seen - low)
+  return seen === 0 ? Number.NaN : Math.max(high - sum / seen, sum / seen - low)
 }
 
 function describe(
@@ -106,14 +175,12 @@ function describe(
   plan: KnotPlan,
   levels: FollowedLevels,
   mixture: TwoPoisson,
-  method: Baseline['method'],
-  automatic: boolean,
-  reason: string,
+  chosen: Pick<Baseline, 'method' | 'automatic' | 'reason'>,
 ): Baseline {
   const { binSeconds, startSeconds } = trace
   const { lnBaseline, variance, sums } = levels
   const rateCps = lnBaseline.map((ln) => Math.exp(ln) / binSeconds)
-  const reach = variance.map((v) => Math.exp(BAND_DEVIATIONS * Math.sqrt(v)))
+  const reach = variance.map((v) => Math.min(Math.exp(BAND_DEVIATIONS * Math.sqrt(v)), WIDEST_BAND))
   let supported = 0
   let run = 0
   let longest = 0
@@ -125,11 +192,10 @@ function describe(
     longest = Math.max(longest, run)
     offBins += sums.support[j]
   }
-  const onAboveCps = levels.signal / binSeconds
+  const found = verdict(levels, mixture, offBins, binSeconds)
+  const lit = found.status !== 'no-on-bins'
   return {
-    method,
-    automatic,
-    reason,
+    ...chosen,
     knotSeconds: plan.knotSeconds,
     firstKnotSeconds: startSeconds + plan.knotSeconds / 2,
     rateCps,
@@ -138,10 +204,10 @@ function describe(
     supportBins: sums.support,
     supportedShare: supported / plan.knots,
     longestUnsupportedSeconds: Math.min(longest * plan.knotSeconds, trace.counts.length * binSeconds),
-    onAboveCps,
-    onShare: sums.usableBins > 0 && levels.signal > 0 ? sums.onBins / sums.usableBins : 0,
+    onAboveCps: lit ? levels.signal / binSeconds : 0,
+    onShare: lit ? sums.onBins / sums.usableBins : 0,
     rounds: levels.rounds,
-    ...verdict(levels, mixture, offBins, binSeconds),
+    ...found,
   }
 }
 
@@ -160,16 +226,16 @@ function verdict(
     }
   const on = off + levels.signal
   const numbers = `off ${rate(off / binSeconds)}, on ${rate(on / binSeconds)}`
+  const distance = levelDistance(off, on)
+  if (distance < SEPARABLE_DEVIATIONS)
+    return {
+      status: 'not-separable',
+      message: `The levels (${numbers}) lie ${Math.max(0, distance).toFixed(1)} standard deviations of one bin apart; at this bin width bins cannot be told on from off. Use a wider bin, or set the emitter aside.`,
+    }
   if (offBins < SUPPORTED_BINS)
     return {
       status: 'no-off-bins',
       message: `Two levels (${numbers}), but no stretch of three off bins to rest a baseline on. Use a narrower bin, or set the emitter aside.`,
-    }
-  const distance = levelDistance(off, on)
-  if (mixture.status === 'not-separable' || distance < SEPARABLE_DEVIATIONS)
-    return {
-      status: 'not-separable',
-      message: `The levels (${numbers}) lie ${Math.max(0, distance).toFixed(1)} standard deviations of one bin apart; at this bin width bins cannot be told on from off. Use a wider bin, or set the emitter aside.`,
     }
   return {
     status: 'ok',

@@ -5,6 +5,8 @@ export interface KnotFit {
   readonly lnBaseline: Float64Array
   /** Variance of it: diagonal of the inverse penalised Hessian. Wide where there was no exposure. */
   readonly variance: Float64Array
+  /** (mu / 2) sum of squared second differences + (rho / 2) sum of squared distances from eta_0. */
+  readonly penalty: number
   readonly steps: number
 }
 
@@ -61,7 +63,12 @@ export function fitKnots(
     const share = longest > LONGEST_STEP ? LONGEST_STEP / longest : 1
     for (let j = 0; j < n; j++) lnBaseline[j] += share * step[j]
     if (longest < CONVERGED || steps === MOST_STEPS)
-      return { lnBaseline, variance: inverseDiagonal(factor), steps }
+      return {
+        lnBaseline,
+        variance: inverseDiagonal(factor),
+        penalty: penaltyOf(lnBaseline, bend, pull, lnOff),
+        steps,
+      }
   }
 }
 
@@ -82,4 +89,15 @@ function secondDifferenceBands(
     second[j - 1] += bend
   }
   return { diagonal, first, second }
+}
+
+function penaltyOf(lnBaseline: Float64Array, bend: number, pull: number, lnOff: number): number {
+  let bends = 0
+  let pulls = 0
+  for (let j = 0; j < lnBaseline.length; j++) {
+    pulls += (lnBaseline[j] - lnOff) ** 2
+    if (j > 0 && j + 1 < lnBaseline.length)
+      bends += (lnBaseline[j - 1] - 2 * lnBaseline[j] + lnBaseline[j + 1]) ** 2
+  }
+  return (bend * bends + pull * pulls) / 2
 }

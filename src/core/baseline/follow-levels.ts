@@ -4,8 +4,11 @@ import { type KnotPlan, penaltyWeights } from './stiffness.ts'
 
 /** Where the rounds start, from the histogram of the whole record. */
 export interface LevelStart {
-  /** Off level and signal, counts per bin; signal 0 when there is one level only. */
+  /** Off level of the whole record, counts per bin; sets the strength of the penalty and where it pulls to. */
   readonly off: number
+  /** Where the knots start, ln counts per bin; null starts them at the off level. */
+  readonly lnBaseline: Float64Array | null
+  /** Counts per bin; 0 when there is one level only. */
   readonly signal: number
   readonly onShare: number
 }
@@ -18,6 +21,8 @@ export interface FollowedLevels {
   readonly signal: number
   readonly onShare: number
   readonly rounds: number
+  /** What the penalty takes off the log-likelihood; 0 for a constant level. */
+  readonly penalty: number
 }
 
 const MOST_ROUNDS = 15
@@ -43,7 +48,7 @@ export function followLevels(
   // A level of no counts at all is set to half a count in the record, so that its logarithm exists.
   const least = 0.5 / Math.max(1, counts.length)
   const lnOff = Math.log(Math.max(start.off, least))
-  let lnBaseline: Float64Array = new Float64Array(plan.knots).fill(lnOff)
+  let lnBaseline: Float64Array = start.lnBaseline ?? new Float64Array(plan.knots).fill(lnOff)
   let doubt: Float64Array | null = null
   let { signal, onShare } = start
   const penalty =
@@ -67,8 +72,22 @@ export function followLevels(
     // One bin of each kind is added, so that neither share can reach 0 and stay there.
     onShare = signal > 0 ? (sums.onBins + 1) / (sums.usableBins + 2) : 0
     if (moved < SETTLED || rounds === MOST_ROUNDS)
-      return { lnBaseline, variance: fitted.variance, sums, signal, onShare, rounds }
+      return { lnBaseline, variance: fitted.variance, sums, signal, onShare, rounds, penalty: fitted.penalty }
   }
+}
+
+/** The whole record taken as off: the smooth curve through all counts, which an emitter that is seldom on hardly lifts. */
+export function smoothedCounts(
+  counts: Uint16Array | Uint32Array,
+  unusable: Uint8Array | null,
+  plan: KnotPlan,
+  binSeconds: number,
+  stiffnessSeconds: number,
+  mean: number,
+): Float64Array {
+  const least = 0.5 / Math.max(1, counts.length)
+  const start = { off: Math.max(mean, least), lnBaseline: null, signal: 0, onShare: 0 }
+  return followLevels(counts, unusable, plan, binSeconds, stiffnessSeconds, start).lnBaseline
 }
 
 /** One level for all knots: total counts over total exposure. Its ln has variance 1 / counts. */
@@ -77,7 +96,7 @@ function fitLevel(
   knots: number,
   lnOff: number,
   least: number,
-): { lnBaseline: Float64Array; variance: Float64Array } {
+): { lnBaseline: Float64Array; variance: Float64Array; penalty: number } {
   let exposure = 0
   let counts = 0
   for (let j = 0; j < knots; j++) {
@@ -88,5 +107,6 @@ function fitLevel(
   return {
     lnBaseline: new Float64Array(knots).fill(ln),
     variance: new Float64Array(knots).fill(1 / Math.max(counts, 0.5)),
+    penalty: 0,
   }
 }
