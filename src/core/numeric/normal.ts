@@ -26,14 +26,16 @@ export function lnNormalUpperTail(z: number): number {
 export function normalQuantile(p: number): number {
   if (!(p >= 0) || !(p <= 1)) return Number.NaN
   if (p === 0.5) return 0
-  if (p < 0.5) return -upperQuantile(Math.log(p))
-  return upperQuantile(Math.log1p(-p))
+  if (p < 0.5) return -normalUpperQuantile(Math.log(p))
+  return normalUpperQuantile(Math.log1p(-p))
 }
 
-function upperQuantile(lnTail: number): number {
+/** z with ln P(Z > z) = lnTail, for any lnTail < 0; the tail may be far below the smallest double. */
+export function normalUpperQuantile(lnTail: number): number {
   if (lnTail === Number.NEGATIVE_INFINITY) return Number.POSITIVE_INFINITY
-  let low = 0
+  let low = -40
   let high = 40
+  while (lnNormalUpperTail(high) > lnTail) high *= 2
   for (let i = 0; i < 100; i++) {
     const middle = 0.5 * (low + high)
     if (middle === low || middle === high) break
