@@ -9,6 +9,9 @@ export interface OffSums {
   /** Sum of on probabilities, and of on probability x (counts - baseline), over all usable bins. */
   readonly onBins: number
   readonly onExcess: number
+  /** The same over bins whose neighbours are both more likely on: a bin in which the emitter switched is not among them. */
+  readonly innerOnBins: number
+  readonly innerOnExcess: number
   readonly usableBins: number
 }
 
@@ -59,9 +62,15 @@ export function confidentOff(
   const constant = signal > 0 ? Math.log(onShare / (1 - onShare)) - signal : Number.NEGATIVE_INFINITY
   let onBins = 0
   let onExcess = 0
+  let innerOnBins = 0
+  let innerOnExcess = 0
   let usableBins = 0
   // A bin is settled one step late, when the bin after it is known.
   let beforeOff = true
+  let beforeOn = false
+  let heldOn = false
+  let heldOnWeight = 0
+  let heldExcess = 0
   let heldOff = true
   let heldWeight = 0
   let heldCount = 0
@@ -86,9 +95,13 @@ export function confidentOff(
         const count = counts[i]
         let weight = 0
         let off = true
+        let on = false
+        let onWeight = 0
+        const excess = count - rate
         if (unusable === null || unusable[i] === 0) {
           const x = count * lnRatio + constant
           off = x < 0
+          on = !off
           if (x <= -CERTAIN) weight = 1
           else if (x < CERTAIN) {
             const place = (x + CERTAIN) * PER_UNIT
@@ -96,17 +109,26 @@ export function confidentOff(
             weight = LOGISTIC[entry] + (place - entry) * (LOGISTIC[entry + 1] - LOGISTIC[entry])
           }
           usableBins++
-          onBins += 1 - weight
-          onExcess += (1 - weight) * (count - rate)
+          onWeight = 1 - weight
+          onBins += onWeight
+          onExcess += onWeight * excess
         }
         if (heldWeight > 0.5 && beforeOff && off) {
           exposure[heldKnot] += heldWeight * heldRatio
           offCounts[heldKnot] += heldWeight * heldCount
           support[heldKnot] += heldWeight
         }
+        if (beforeOn && on) {
+          innerOnBins += heldOnWeight
+          innerOnExcess += heldOnWeight * heldExcess
+        }
         // An unusable bin holds weight 0 and counts as off for its neighbours.
         beforeOff = heldOff
         heldOff = off
+        beforeOn = heldOn
+        heldOn = on
+        heldOnWeight = onWeight
+        heldExcess = excess
         heldWeight = weight
         heldCount = count
         heldRatio = rate * perRate
@@ -121,5 +143,14 @@ export function confidentOff(
     offCounts[heldKnot] += heldWeight * heldCount
     support[heldKnot] += heldWeight
   }
-  return { exposure, counts: offCounts, support, onBins, onExcess, usableBins }
+  return {
+    exposure,
+    counts: offCounts,
+    support,
+    onBins,
+    onExcess,
+    innerOnBins,
+    innerOnExcess,
+    usableBins,
+  }
 }

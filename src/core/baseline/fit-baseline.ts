@@ -16,6 +16,7 @@ import { fitTwoPoisson, levelDistance, SEPARABLE_DEVIATIONS, type TwoPoisson } f
 const DRIFT_SHARE = 0.1
 /** Two-sided 95 % point of the normal distribution. */
 const BAND_DEVIATIONS = 1.959963984540054
+const BEYOND_DOUBT_DEVIATIONS = 3
 /** Factor at which the band ends where next to nothing is known. */
 const WIDEST_BAND = 1000
 /** Share of on bins to start from when the whole record is first taken as off. */
@@ -192,7 +193,7 @@ function describe(
     longest = Math.max(longest, run)
     offBins += sums.support[j]
   }
-  const found = verdict(levels, mixture, offBins, binSeconds)
+  const found = verdict(levels, mixture, chosen.method, offBins, binSeconds)
   const lit = found.status !== 'no-on-bins'
   return {
     ...chosen,
@@ -215,6 +216,7 @@ function describe(
 function verdict(
   levels: FollowedLevels,
   mixture: TwoPoisson,
+  method: Baseline['method'],
   offBins: number,
   binSeconds: number,
 ): Pick<Baseline, 'status' | 'message'> {
@@ -226,7 +228,12 @@ function verdict(
     }
   const on = off + levels.signal
   const numbers = `off ${rate(off / binSeconds)}, on ${rate(on / binSeconds)}`
-  const distance = levelDistance(off, on)
+  // Where the levels overlap, the off bins sure enough to be used lie too low and the distance comes out too large; unless
+  // a moving baseline puts it beyond doubt, the mixture, which uses all bins, decides.
+  const followed = levelDistance(off, on)
+  const overlap =
+    mixture.status === 'not-separable' && (method === 'constant' || followed < BEYOND_DOUBT_DEVIATIONS)
+  const distance = overlap ? levelDistance(mixture.offMean, mixture.onMean) : followed
   if (distance < SEPARABLE_DEVIATIONS)
     return {
       status: 'not-separable',

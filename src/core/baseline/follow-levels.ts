@@ -26,8 +26,11 @@ export interface FollowedLevels {
 }
 
 const MOST_ROUNDS = 15
-/** Rounds end when neither a supported knot nor the signal moved by more than this share. */
+/** Rounds end when neither a supported knot nor the signal moved by more than this share, ... */
 const SETTLED = 1e-3
+/** ... a tenth of a knot's own standard deviation not counted. */
+const SETTLED_DEVIATIONS = 0.1
+const LEAST_INNER_BINS = 20
 /** Support, in bins, from which a knot counts as seen. */
 export const SUPPORTED_BINS = 5
 
@@ -61,11 +64,14 @@ export function followLevels(
       penalty === null
         ? fitLevel(sums, plan.knots, lnOff, least)
         : fitKnots(sums.exposure, sums.counts, lnBaseline, penalty.bend, penalty.pull, lnOff)
-    const nextSignal = sums.onBins > 0.5 && signal > 0 ? Math.max(sums.onExcess / sums.onBins, least) : 0
+    const nextSignal = signal > 0 ? signalOf(sums, least) : 0
     let moved = signal > 0 ? Math.abs(nextSignal - signal) / signal : 0
     for (let j = 0; j < plan.knots; j++)
       if (sums.support[j] >= SUPPORTED_BINS)
-        moved = Math.max(moved, Math.abs(fitted.lnBaseline[j] - lnBaseline[j]))
+        moved = Math.max(
+          moved,
+          Math.abs(fitted.lnBaseline[j] - lnBaseline[j]) - SETTLED_DEVIATIONS * Math.sqrt(fitted.variance[j]),
+        )
     lnBaseline = fitted.lnBaseline
     doubt = fitted.variance.map(Math.sqrt)
     signal = nextSignal
@@ -74,6 +80,12 @@ export function followLevels(
     if (moved < SETTLED || rounds === MOST_ROUNDS)
       return { lnBaseline, variance: fitted.variance, sums, signal, onShare, rounds, penalty: fitted.penalty }
   }
+}
+
+/** Signal from the bins between on neighbours, from all on bins when there are hardly any such; 0 when there is no on bin. */
+function signalOf(sums: OffSums, least: number): number {
+  if (sums.innerOnBins >= LEAST_INNER_BINS) return Math.max(sums.innerOnExcess / sums.innerOnBins, least)
+  return sums.onBins > 0.5 ? Math.max(sums.onExcess / sums.onBins, least) : 0
 }
 
 /** The whole record taken as off: the smooth curve through all counts, which an emitter that is seldom on hardly lifts. */
