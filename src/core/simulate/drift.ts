@@ -24,9 +24,13 @@ export interface Drift {
   excursion(from: number, to: number): number
 }
 
-/** Builds the function from its description. Knots that are not in time order, or unequal in number, are a RangeError. */
+/** Builds the function from its description. Knots out of time order or unequal in number, and times of 0 or below, are a RangeError. */
 export function driftOf(constant: number, terms: readonly DriftTerm[]): Drift {
-  for (const term of terms) if (term.kind === 'knots') checkKnots(term.seconds, term.values)
+  for (const term of terms) {
+    if (term.kind === 'knots') checkKnots(term.seconds, term.values)
+    else if (term.kind === 'sinusoid') checkTime('period', term.periodSeconds)
+    else if (term.kind === 'exponential') checkTime('time constant', term.tauSeconds)
+  }
   return {
     constant: terms.length === 0,
     at(seconds) {
@@ -45,6 +49,10 @@ export function driftOf(constant: number, terms: readonly DriftTerm[]): Drift {
       return sum
     },
   }
+}
+
+function checkTime(what: string, seconds: number): void {
+  if (!(seconds > 0)) throw new RangeError(`The ${what} of a drift must be above 0 s; received ${seconds} s.`)
 }
 
 function checkKnots(seconds: readonly number[], values: readonly number[]): void {

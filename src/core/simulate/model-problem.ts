@@ -22,13 +22,20 @@ export function modelProblem(model: EmitterModel): string | null {
       return `${where} needs a signal of at least 0 cps; received ${state.signalCps}.`
     const problem = durationProblem(state.dwell)
     if (problem !== null) return `${where}: ${problem}`
-    const { next } = state
+    const { next, flicker, driven } = state
+    if (flicker !== null && !(flicker.relativeSd >= 0 && flicker.meanSeconds > 0))
+      return `${where} needs flicker of at least 0 over a mean time above 0 s; received ${flicker.relativeSd} over ${flicker.meanSeconds} s.`
+    if (driven !== null && !(driven.hazardFactor >= 0 && driven.extraPerSecond >= 0))
+      return `${where} needs a hazard factor and an extra hazard of at least 0; received ${driven.hazardFactor} and ${driven.extraPerSecond}.`
     const usable = next.length === states.length && next.every((w) => w >= 0) && next.some((w) => w > 0)
     if (!usable || next[index] !== 0)
       return `${where} needs one weight per next state, 0 for itself and one above 0; received [${next.join(', ')}].`
   }
-  if (gate !== null && !(gate.halfPeriodSeconds > 0 && gate.duty >= 0 && gate.duty <= 1 && gate.leakCps >= 0))
-    return 'A gate needs a half-period above 0 s, a duty of 0 to 1 and a leak of at least 0 cps.'
+  if (gate !== null) {
+    const { halfPeriodSeconds, duty, leakCps, guardSeconds } = gate
+    if (!(halfPeriodSeconds > 0 && duty >= 0 && duty <= 1 && leakCps >= 0 && guardSeconds >= 0))
+      return `A gate needs a half-period above 0 s, a duty of 0 to 1, leak and guard of at least 0; received ${halfPeriodSeconds} s, ${duty}, ${leakCps} cps, ${guardSeconds} s.`
+  }
   if (!(detector.deadTimeSeconds >= 0))
     return `The dead time must be at least 0 s; received ${detector.deadTimeSeconds} s.`
   if (detector.afterpulsing !== null) {
