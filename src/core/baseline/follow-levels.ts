@@ -26,10 +26,13 @@ export interface FollowedLevels {
 }
 
 const MOST_ROUNDS = 15
-/** Rounds end when neither a supported knot nor the signal moved by more than this share, ... */
+/**
+ * Rounds end when the signal moves by less than this share and nearly all supported knots by less than it plus a tenth of their
+ * own standard deviation. Some knots of a long record always trade a bin or two to and fro.
+ */
 const SETTLED = 1e-3
-/** ... a tenth of a knot's own standard deviation not counted. */
 const SETTLED_DEVIATIONS = 0.1
+const RESTLESS_SHARE = 0.005
 const LEAST_INNER_BINS = 20
 /** Support, in bins, from which a knot counts as seen. */
 export const SUPPORTED_BINS = 5
@@ -65,19 +68,19 @@ export function followLevels(
         ? fitLevel(sums, plan.knots, lnOff, least)
         : fitKnots(sums.exposure, sums.counts, lnBaseline, penalty.bend, penalty.pull, lnOff)
     const nextSignal = signal > 0 ? signalOf(sums, least) : 0
-    let moved = signal > 0 ? Math.abs(nextSignal - signal) / signal : 0
-    for (let j = 0; j < plan.knots; j++)
-      if (sums.support[j] >= SUPPORTED_BINS)
-        moved = Math.max(
-          moved,
-          Math.abs(fitted.lnBaseline[j] - lnBaseline[j]) - SETTLED_DEVIATIONS * Math.sqrt(fitted.variance[j]),
-        )
+    const signalMoved = signal > 0 ? Math.abs(nextSignal - signal) / signal : 0
+    let restless = 0
+    for (let j = 0; j < plan.knots; j++) {
+      const settled = SETTLED + SETTLED_DEVIATIONS * Math.sqrt(fitted.variance[j])
+      if (sums.support[j] >= SUPPORTED_BINS && Math.abs(fitted.lnBaseline[j] - lnBaseline[j]) > settled)
+        restless++
+    }
     lnBaseline = fitted.lnBaseline
     doubt = fitted.variance.map(Math.sqrt)
     signal = nextSignal
     // One bin of each kind is added, so that neither share can reach 0 and stay there.
     onShare = signal > 0 ? (sums.onBins + 1) / (sums.usableBins + 2) : 0
-    if (moved < SETTLED || rounds === MOST_ROUNDS)
+    if ((signalMoved < SETTLED && restless <= RESTLESS_SHARE * plan.knots) || rounds === MOST_ROUNDS)
       return { lnBaseline, variance: fitted.variance, sums, signal, onShare, rounds, penalty: fitted.penalty }
   }
 }

@@ -1,3 +1,4 @@
+import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { baselineCounts, baselineCps } from '../../../src/core/baseline/baseline-at.ts'
 import { fitBaseline } from '../../../src/core/baseline/fit-baseline.ts'
@@ -276,5 +277,64 @@ describe('records that cannot be fitted', () => {
     // Taking only bins more likely off than on cuts the upper tail of the off counts, 1 to 2 % of the mean here.
     expect(Math.abs(baselineCps(baseline, 0) / 1000 - 1)).toBeLessThan(0.03)
     expect(Math.abs(baseline.onAboveCps / 2000 - 1)).toBeLessThan(0.03)
+  })
+
+  it('returns finite numbers for any counts, gaps and stiffness', () => {
+    fc.assert(
+      fc.property(
+        fc.array(fc.oneof(fc.nat(3), fc.nat(200), fc.nat(65535)), { maxLength: 400 }),
+        fc.constantFrom(...methods),
+        fc.constantFrom(0.01, 1, 4.65, 1e4, Number.POSITIVE_INFINITY),
+        fc.integer({ min: 1, max: 7 }),
+        (counts, method, stiffnessSeconds, every) => {
+          const unusable = every === 1 ? null : Uint8Array.from(counts, (_, i) => (i % every === 0 ? 1 : 0))
+          const baseline = fitBaseline(traceOf(counts), choices(method, stiffnessSeconds), unusable)
+          for (const values of [baseline.rateCps, baseline.lowCps, baseline.highCps, baseline.supportBins])
+            expect(values.every((v) => Number.isFinite(v) && v >= 0)).toBe(true)
+          expect(baseline.rateCps.every((v, j) => v >= baseline.lowCps[j] && v <= baseline.highCps[j])).toBe(
+            true,
+          )
+          expect(baseline.onAboveCps).toBeGreaterThanOrEqual(0)
+          expect(baseline.onShare).toBeGreaterThanOrEqual(0)
+          expect(baseline.onShare).toBeLessThanOrEqual(1)
+        },
+      ),
+      { seed: 71, numRuns: 300 },
+    )
+  })
+})
+
+describe('limits', () => {
+  it('is the constant baseline at infinite stiffness, within the error of its slope', () => {
+    const made = telegraph({
+      seconds: 300,
+      binSeconds: 0.01,
+      offCps: () => 1000,
+      signalCps: 9000,
+      tauSeconds: 5,
+      seed: 8,
+    })
+    const constant = fitBaseline(made.trace, choices('constant'), null)
+    const line = fitBaseline(made.trace, choices('drifting', Number.POSITIVE_INFINITY), null)
+    // Over 1e5 off counts: level known to 0.3 %, ends of a fitted line to twice that; 2 % is 3 sd and more. Seeded.
+    for (const rate of line.rateCps) expect(Math.abs(rate / constant.rateCps[0] - 1)).toBeLessThan(0.02)
+    expect(Math.abs(line.onAboveCps / constant.onAboveCps - 1)).toBeLessThan(1e-3)
+  })
+
+  it('scales with the unit of time', () => {
+    const made = telegraph({
+      seconds: 120,
+      binSeconds: 0.01,
+      offCps: swinging,
+      signalCps: 4000,
+      tauSeconds: 5,
+      seed: 9,
+    })
+    const slower = { ...made.trace, binSeconds: 0.08 }
+    const one = fitBaseline(made.trace, choices('automatic', 4), null)
+    const eight = fitBaseline(slower, choices('automatic', 32), null)
+    expect(eight.knotSeconds).toBeCloseTo(8 * one.knotSeconds, 12)
+    one.rateCps.forEach((rate, j) => expect((8 * eight.rateCps[j]) / rate).toBeCloseTo(1, 6))
+    expect(eight.supportBins).toEqual(one.supportBins)
   })
 })
