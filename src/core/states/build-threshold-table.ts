@@ -1,178 +1,250 @@
-import { GATE_CLASSES } from '../photons/gate.ts'
-import { durationGrid } from './duration-grid.ts'
-import { GUARD_CODE, gateSegments } from './gate-segments.ts'
+import { addRun, blockBuilder, finish, type BlockBuilder } from './block-builder.ts'
+import { EXACT_COLUMNS, columnOf, durationGrid, type DurationGrid } from './duration-grid.ts'
 import type { LevelledTrace } from './levels.ts'
-import { type StateRuns, stateRuns } from './state-runs.ts'
+import { MOST_ROWS, runIntervals, type ClassSpans, type TakeRun } from './run-intervals.ts'
 import type { TableGroup, ThresholdBlock, ThresholdTable } from './threshold-table.ts'
+import { usableSpans } from './usable-spans.ts'
 
+/** The thresholds of a table: row t is `firstThreshold + t * step` counts. */
 export interface ThresholdRange {
   readonly firstThreshold: number
   readonly step: number
   readonly rows: number
 }
 
-/** Thresholds further than this many standard deviations outside the two levels are not tabled. */
-const MARGIN_DEVIATIONS = 3
+const CLASS_GROUPS = ['reference', 'driven', 'sham'] as const
+const GUARD = 3
+
+/** How far beyond the levels thresholds are tabled, standard deviations of one bin. */
+const BEYOND_DEVIATIONS = 3
 
 /**
  * Thresholds worth tabling: from three standard deviations below the off level to three above the on level, inside
- * the values seen. The step is 1 count unless that needs more than `maxRows` rows; then thresholds lie on that grid.
+ * the values that occur. Step 1 unless that needs more than `maxRows`; then the step is the smallest that fits, and
+ * thresholds lie on the grid firstThreshold + t * step only.
  */
 export function thresholdRange(levelled: LevelledTrace, maxRows = 512): ThresholdRange {
-  const { offCounts, onCounts, offset, highest } = levelled
-  const on = Math.max(onCounts, offCounts)
-  const low = Math.max(offset + 1, Math.ceil(offCounts - MARGIN_DEVIATIONS * Math.sqrt(Math.max(offCounts, 1))))
-  const high = Math.min(highest, Math.floor(on + MARGIN_DEVIATIONS * Math.sqrt(Math.max(on, 1))))
-  const firstThreshold = Math.min(low, Math.max(highest, offset + 1))
-  const span = Math.max(0, high - firstThreshold)
-  const step = Math.max(1, Math.ceil((span + 1) / maxRows))
-  return { firstThreshold, step, rows: Math.floor(span / step) + 1 }
+  const { values, offset, gaps, offCounts, onCounts } = levelled
+  let lowest = Number.POSITIVE_INFINITY
+  let highest = 0
+  for (let i = 0; i < values.length; i++) {
+    if (gaps !== null && gaps[i] !== 0) continue
+    if (values[i] < lowest) lowest = values[i]
+    if (values[i] > highest) highest = values[i]
+  }
+  if (lowest > highest) return { firstThreshold: offset + 1, step: 1, rows: 1 }
+  const sd = (counts: number): number => Math.sqrt(Math.max(0, counts))
+  const wantedLow = Math.floor(offCounts - BEYOND_DEVIATIONS * sd(offCounts))
+  const wantedHigh = Math.ceil(onCounts + BEYOND_DEVIATIONS * sd(onCounts))
+  // Comparisons with a level that is not finite fall back to the values that occur.
+  const low = Math.max(lowest + offset + 1, Number.isFinite(wantedLow) ? wantedLow : -Infinity)
+  const high = Math.min(highest + offset, Number.isFinite(wantedHigh) ? wantedHigh : Infinity)
+  const from = Math.min(low, highest + offset + 1)
+  const spread = Math.max(0, high - from)
+  const step = Math.max(1, Math.ceil((spread + 1) / Math.max(1, maxRows)))
+  return { firstThreshold: from, step, rows: Math.floor(spread / step) + 1 }
+}
+
+/** Rows at which each bin is on: row t when its value is at least firstThreshold + t * step. */
+function levelsOf(levelled: LevelledTrace, range: ThresholdRange): Uint16Array {
+  const { values, offset } = levelled
+  const { step, rows } = range
+  const first = range.firstThreshold - offset
+  const levels = new Uint16Array(values.length)
+  if (step === 1) {
+    const one = (first - 1) | 0
+    for (let i = 0; i < levels.length; i++) {
+      const above = values[i] - one
+      levels[i] = above < 0 ? 0 : above > rows ? rows : above
+    }
+  } else
+    for (let i = 0; i < levels.length; i++) {
+      const above = Math.floor((values[i] - first) / step) + 1
+      levels[i] = above < 0 ? 0 : above > rows ? rows : above
+    }
+  return levels
+}
+
+/** Stretches of equal gate code; one stretch of reference without a gate. */
+function classSpans(bins: number, gateCodes: Uint8Array | null): ClassSpans {
+  if (gateCodes === null) return { starts: Int32Array.of(0, bins), codes: Uint8Array.of(0) }
+  if (gateCodes.length !== bins)
+    throw new RangeError(
+      `Expected one gate code per bin, ${bins}, received ${gateCodes.length}. Compute them for this bin width.`,
+    )
+  const starts: number[] = []
+  const codes: number[] = []
+  for (let i = 0; i < bins; i++)
+    if (i === 0 || gateCodes[i] !== gateCodes[i - 1]) {
+      starts.push(i)
+      codes.push(Math.min(gateCodes[i], GUARD))
+    }
+  starts.push(bins)
+  return { starts: Int32Array.from(starts), codes: Uint8Array.from(codes) }
+}
+
+/** Usable bins per gate code and level: entry code * (rows + 1) + level. */
+function levelCounts(
+  levels: Uint16Array,
+  rows: number,
+  gaps: Uint8Array | null,
+  gateCodes: Uint8Array | null,
+): Float64Array {
+  const counts = new Int32Array((GUARD + 1) * (rows + 1))
+  for (let i = 0; i < levels.length; i++) {
+    if (gaps !== null && gaps[i] !== 0) continue
+    counts[(gateCodes === null ? 0 : Math.min(gateCodes[i], GUARD)) * (rows + 1) + levels[i]]++
+  }
+  return Float64Array.from(counts)
+}
+
+/** Column of every duration up to a length, for speed; longer ones by search. */
+function columnFinder(grid: DurationGrid, longest: number): (m: number) => number {
+  const known = new Uint16Array(Math.min(longest, 1 << 16) + 1)
+  for (let m = 1, column = 0; m < known.length; m++) {
+    if (m >= grid.edges[column + 1]) column++
+    known[m] = column
+  }
+  return (m) => (m < known.length ? known[m] : columnOf(grid, m))
 }
 
 /**
- * The table of all thresholds. Bins are sorted by the row at which they turn on (counting sort); on-runs grow while
- * the threshold falls, off-runs while it rises, and after each row the tallies are copied out. Cost: one sort, two
- * passes over the bins, rows x columns of copying. Works for a trace of no bins (all tallies 0).
+ * Dwell tallies for every threshold, both states and every gate class that occurs, by one walk over the bins.
+ *
+ * Gaps, and both ends of the record, cut runs: a dwell that ends there is censored at its length, one that starts there
+ * has an unseen start and counts in `unseenStarts`, `stateBins` and `longestBins` only. In the group of a gate class a dwell
+ * whose start was seen is entered at its age when it comes into a window of the class at an age above 0, censored at its age when it
+ * leaves one, and complete at its full length in the class of its last bin; guard bins belong to no class. `longestBins`
+ * of a class is the greatest age reached inside it, and its `unseenStarts` counts stays in a window.
+ *
+ * @param gateCodes class code of every bin, as from `gateCodes`; null without a gate, or to ignore it
  */
 export function buildThresholdTable(
   levelled: LevelledTrace,
   gateCodes: Uint8Array | null,
   range: ThresholdRange,
 ): ThresholdTable {
-  const { values, gaps, offset } = levelled
-  const bins = values.length
-  const { firstThreshold, step, rows } = range
-  const grid = durationGrid(Math.max(1, bins))
-  const { groups, groupOfCode } = groupsOf(gateCodes)
-  const segments = groups.length > 1 && gateCodes !== null ? gateSegments(gateCodes) : null
+  const { rows } = range
+  if (!(Number.isInteger(rows) && rows >= 1 && rows <= MOST_ROWS && range.step >= 1))
+    throw new RangeError(`Expected 1 to ${MOST_ROWS} rows of step >= 1, received ${rows} of ${range.step}.`)
+  const bins = levelled.values.length
+  const spans = usableSpans(bins, levelled.gaps)
+  const longestSpan = spans.starts.reduce((most, start, j) => Math.max(most, spans.ends[j] - start), 1)
+  const grid = durationGrid(longestSpan)
+  const columns = grid.edges.length - 1
+  const columnAt = columnFinder(grid, longestSpan)
+  const levels = levelsOf(levelled, range)
+  const classes = classSpans(bins, gateCodes)
+  const binsAt = levelCounts(levels, rows, levelled.gaps, gateCodes)
 
-  // onRows of a bin: it is on in rows 0 .. onRows - 1. Sorted positions of equal onRows stay in time order.
-  const rowOfValue = new Uint16Array(levelled.highest - offset + 2)
-  for (let value = 0; value < rowOfValue.length; value++) {
-    const row = Math.floor((value + offset - firstThreshold) / step) + 1
-    rowOfValue[value] = Math.min(rows, Math.max(0, row))
-  }
-  const bounds = new Uint32Array(rows + 2)
-  let usableBins = 0
-  for (let i = 0; i < bins; i++) {
-    if (gaps !== null && gaps[i] !== 0) continue
-    bounds[rowOfValue[values[i]] + 1]++
-    usableBins++
-  }
-  for (let row = 0; row <= rows; row++) bounds[row + 1] += bounds[row]
-  const sorted = new Uint32Array(usableBins)
-  const next = bounds.slice(0, rows + 1)
-  for (let i = 0; i < bins; i++) {
-    if (gaps !== null && gaps[i] !== 0) continue
-    sorted[next[rowOfValue[values[i]]]++] = i
-  }
-
-  const blocks = groups.map(
-    (_, group) =>
-      [0, 1].map(() => emptyBlock(rows, grid.edges.length - 1, group > 0)) as [ThresholdBlock, ThresholdBlock],
+  const classGroups = gateCodes === null ? [] : CLASS_GROUPS.filter((_, code) => classes.codes.includes(code))
+  const groups: TableGroup[] = ['all', ...classGroups]
+  const groupOfCode = [0, 1, 2, GUARD].map((code) =>
+    code === GUARD ? -1 : (groups as string[]).indexOf(CLASS_GROUPS[code]),
   )
-  const fresh = (): StateRuns => stateRuns(bins, gaps, grid, segments, groupOfCode, groups.length)
-  const on = fresh()
-  for (let row = rows - 1; row >= 0; row--) {
-    joinAll(on, sorted, bounds[row + 1], bounds[row + 2])
-    for (const [group, tally] of on.groups.entries()) copyRow(blocks[group][1], tally, row)
+  const builders = groups.map((_, g): readonly [BlockBuilder, BlockBuilder] => [
+    blockBuilder(rows, columns, g > 0),
+    blockBuilder(rows, columns, g > 0),
+  ])
+  const codesInUse =
+    gateCodes === null ? [0] : [0, 1, 2, GUARD].filter((code) => classes.codes.includes(code))
+  const short = [0, 1, 2, GUARD].map(
+    (code) => new Int32Array(codesInUse.includes(code) ? 2 * (rows + 1) * EXACT_COLUMNS : 0),
+  )
+
+  const tallyLongest = (builder: BlockBuilder, state: 0 | 1, m: number, from: number, to: number): void => {
+    const row = state === 0 ? from : to - 1
+    if (m > builder.longest[row]) builder.longest[row] = m
   }
-  const off = fresh()
-  for (let row = 0; row < rows; row++) {
-    joinAll(off, sorted, bounds[row], bounds[row + 1])
-    for (const [group, tally] of off.groups.entries()) copyRow(blocks[group][0], tally, row)
+  // Runs come in the order of their last bins, so the stretch of the last bin only moves on (or waits).
+  let last = 0
+  const takeByClass = (
+    state: 0 | 1,
+    start: number,
+    end: number,
+    from: number,
+    to: number,
+    startSeen: boolean,
+    endSeen: boolean,
+  ): void => {
+    while (classes.starts[last + 1] < end) last++
+    let piece = last
+    while (classes.starts[piece] > start) piece--
+    for (; piece <= last; piece++) {
+      const group = groupOfCode[classes.codes[piece]]
+      if (group < 0) continue
+      const builder = builders[group][state]
+      const age = Math.min(end, classes.starts[piece + 1]) - start
+      tallyLongest(builder, state, age, from, to)
+      if (!startSeen) {
+        builder.unseen[from]++
+        builder.unseen[to]--
+        continue
+      }
+      const entryAge = classes.starts[piece] - start
+      if (entryAge > 0) {
+        const column = columnAt(entryAge)
+        addRun(builder.entered, columns, rows, column, entryAge - grid.edges[column], from, to)
+      }
+      const column = columnAt(age)
+      const kind = piece === last && endSeen ? builder.complete : builder.censored
+      addRun(kind, columns, rows, column, age - grid.edges[column], from, to)
+    }
   }
+  const take: TakeRun = (state, start, end, from, to, startSeen, endSeen) => {
+    if (to <= from) return
+    const builder = builders[0][state]
+    const m = end - start
+    tallyLongest(builder, state, m, from, to)
+    if (startSeen) {
+      const column = columnAt(m)
+      const kind = endSeen ? builder.complete : builder.censored
+      addRun(kind, columns, rows, column, m - grid.edges[column], from, to)
+    } else {
+      builder.unseen[from]++
+      builder.unseen[to]--
+    }
+    if (gateCodes !== null) takeByClass(state, start, end, from, to, startSeen, endSeen)
+  }
+  for (let j = 0; j < spans.starts.length; j++)
+    runIntervals(levels, rows, spans.starts[j], spans.ends[j], classes, short, take)
+
+  const half = (rows + 1) * EXACT_COLUMNS
+  const blockOf = (g: number, state: 0 | 1): ThresholdBlock => {
+    const codes = g === 0 ? codesInUse : codesInUse.filter((code) => groupOfCode[code] === g)
+    const halves = codes.map((code) => short[code].subarray(state * half, (state + 1) * half))
+    return finish(builders[g][state], grid, rows, state, halves, stateBinsOf(binsAt, rows, codes, state))
+  }
+  const blocks = groups.map((_, g) => [blockOf(g, 0), blockOf(g, 1)] as const)
+  const groupBins = Float64Array.from(blocks, ([off, on]) => off.stateBins[0] + on.stateBins[0])
   return {
     grid,
     binSeconds: levelled.binSeconds,
-    firstThreshold,
-    step,
+    firstThreshold: range.firstThreshold,
+    step: range.step,
     rows,
     groups,
     blocks,
-    usableBins,
-    groupBins: binsOfGroups(gateCodes, gaps, groups.length, groupOfCode, usableBins),
+    usableBins: groupBins[0],
+    groupBins,
   }
 }
 
-/** Neighbouring positions join as one stretch, so a long run costs one merge per row, not one per bin. */
-function joinAll(runs: StateRuns, sorted: Uint32Array, from: number, to: number): void {
-  let at = from
-  while (at < to) {
-    const first = sorted[at]
-    let end = first + 1
-    at++
-    while (at < to && sorted[at] === end) {
-      end++
-      at++
-    }
-    runs.join(first, end)
-  }
-}
-
-function groupsOf(codes: Uint8Array | null): { groups: TableGroup[]; groupOfCode: number[] } {
-  const groups: TableGroup[] = ['all']
-  const groupOfCode = [0, 0, 0, 0]
-  if (codes === null) return { groups, groupOfCode }
-  const present = new Set(codes)
-  for (const [code, name] of GATE_CLASSES.entries()) {
-    if (name === 'guard' || !present.has(code)) continue
-    groupOfCode[code] = groups.length
-    groups.push(name)
-  }
-  return { groups, groupOfCode }
-}
-
-function binsOfGroups(
-  codes: Uint8Array | null,
-  gaps: Uint8Array | null,
-  groupCount: number,
-  groupOfCode: readonly number[],
-  usableBins: number,
+/** Bins in a state per row: on at row t are the bins of level above t. */
+function stateBinsOf(
+  binsAt: Float64Array,
+  rows: number,
+  codes: readonly number[],
+  state: 0 | 1,
 ): Float64Array {
-  const groupBins = new Float64Array(groupCount)
-  groupBins[0] = usableBins
-  if (codes === null) return groupBins
-  for (let i = 0; i < codes.length; i++) {
-    if (codes[i] !== GUARD_CODE && (gaps === null || gaps[i] === 0)) groupBins[groupOfCode[codes[i]]]++
+  const off = new Float64Array(rows)
+  let total = 0
+  let below = 0
+  for (let level = 0; level <= rows; level++)
+    for (const code of codes) total += binsAt[code * (rows + 1) + level]
+  for (let row = 0; row < rows; row++) {
+    for (const code of codes) below += binsAt[code * (rows + 1) + row]
+    off[row] = state === 0 ? below : total - below
   }
-  return groupBins
+  return off
 }
-
-function emptyBlock(rows: number, columns: number, gated: boolean): ThresholdBlock {
-  const cells = (): Float64Array => new Float64Array(rows * columns)
-  const none = new Float64Array(0)
-  return {
-    completeCount: cells(),
-    completeSum: cells(),
-    completeSquares: cells(),
-    censoredCount: cells(),
-    censoredSum: cells(),
-    censoredSquares: cells(),
-    enteredCount: gated ? cells() : none,
-    enteredSum: gated ? cells() : none,
-    enteredSquares: gated ? cells() : none,
-    unseenStarts: new Float64Array(rows),
-    stateBins: new Float64Array(rows),
-    longestBins: new Float64Array(rows),
-  }
-}
-
-function copyRow(block: ThresholdBlock, tally: StateRuns['groups'][number], row: number): void {
-  const at = row * tally.complete.count.length
-  block.completeCount.set(tally.complete.count, at)
-  block.completeSum.set(tally.complete.sum, at)
-  block.completeSquares.set(tally.complete.squares, at)
-  block.censoredCount.set(tally.censored.count, at)
-  block.censoredSum.set(tally.censored.sum, at)
-  block.censoredSquares.set(tally.censored.squares, at)
-  if (block.enteredCount.length > 0) {
-    block.enteredCount.set(tally.entered.count, at)
-    block.enteredSum.set(tally.entered.sum, at)
-    block.enteredSquares.set(tally.entered.squares, at)
-  }
-  block.unseenStarts[row] = tally.unseenStarts
-  block.stateBins[row] = tally.stateBins
-  block.longestBins[row] = tally.longestBins
-}
-

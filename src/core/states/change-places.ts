@@ -1,4 +1,4 @@
-/** Values below this fit the paired comparison: two 16-bit values in one 32-bit subtraction, the top bit of each free. */
+/** Values below this fit the paired comparison: two 16-bit values in one 32-bit addition, the top bit of each free. */
 const PAIRED_LIMIT = 0x8000
 
 /** Whether the bytes of a 32-bit word stand lowest first, as the paired comparison needs. */
@@ -83,8 +83,8 @@ function plainWords(
 }
 
 /**
- * The same with two bins to a subtraction. With the top bit of each half set, neither half borrows from the other, and
- * the top bit stays set exactly when the value is at least the level (Lamport 1975, multiple byte processing).
+ * The same with two bins to an addition: lifted by 2^15 - level, a 16-bit half has its top bit set exactly when the value
+ * is at least the level, and never carries into its neighbour (Lamport 1975, multiple byte processing).
  * The 16 results of a word are laid side by side: even bins in the low half, odd bins in the high half.
  */
 function pairedWords(
@@ -97,29 +97,28 @@ function pairedWords(
   at: number,
 ): number {
   const two = new Uint32Array(values.buffer, values.byteOffset + 2 * first, words << 4)
-  const both = (level | (level << 16)) | 0
+  const lift = Math.imul(PAIRED_LIMIT - level, 0x10001)
   const TOPS = 0x80008000 | 0
   let place = at
   let previous = before
   for (let w = 0; w < words; w++) {
     const p = w << 4
-    const shuffled =
-      (((two[p] | TOPS) - both) & TOPS) |
-      ((((two[p + 1] | TOPS) - both) & TOPS) >>> 1) |
-      ((((two[p + 2] | TOPS) - both) & TOPS) >>> 2) |
-      ((((two[p + 3] | TOPS) - both) & TOPS) >>> 3) |
-      ((((two[p + 4] | TOPS) - both) & TOPS) >>> 4) |
-      ((((two[p + 5] | TOPS) - both) & TOPS) >>> 5) |
-      ((((two[p + 6] | TOPS) - both) & TOPS) >>> 6) |
-      ((((two[p + 7] | TOPS) - both) & TOPS) >>> 7) |
-      ((((two[p + 8] | TOPS) - both) & TOPS) >>> 8) |
-      ((((two[p + 9] | TOPS) - both) & TOPS) >>> 9) |
-      ((((two[p + 10] | TOPS) - both) & TOPS) >>> 10) |
-      ((((two[p + 11] | TOPS) - both) & TOPS) >>> 11) |
-      ((((two[p + 12] | TOPS) - both) & TOPS) >>> 12) |
-      ((((two[p + 13] | TOPS) - both) & TOPS) >>> 13) |
-      ((((two[p + 14] | TOPS) - both) & TOPS) >>> 14) |
-      ((((two[p + 15] | TOPS) - both) & TOPS) >>> 15)
+    let shuffled = (two[p + 15] + lift) & TOPS
+    shuffled = (shuffled >>> 1) | ((two[p + 14] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 13] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 12] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 11] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 10] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 9] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 8] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 7] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 6] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 5] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 4] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 3] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 2] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p + 1] + lift) & TOPS)
+    shuffled = (shuffled >>> 1) | ((two[p] + lift) & TOPS)
     if (shuffled === ((0 - previous) | 0)) continue
     // Bit 31 - 2j is even bin 2j, bit 30 - 2j odd bin 2j + 1: swap the halves, then interleave them.
     let mask = (shuffled << 16) | (shuffled >>> 16)
