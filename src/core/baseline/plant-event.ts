@@ -1,23 +1,25 @@
 import type { RandomSource } from '../numeric/random-source.ts'
 import { poissonVariate } from '../numeric/variates.ts'
-import type { Trace } from '../photons/trace.ts'
+import { fittingCounts, type Trace } from '../photons/trace.ts'
 import type { Recipe } from '../recipe/recipe.ts'
 import type { Baseline } from './baseline.ts'
 import { baselineCounts } from './baseline-at.ts'
 import { fitBaseline } from './fit-baseline.ts'
+import { unusableBins } from './unusable-bins.ts'
 
 export interface PlantWish {
   /** Start of the planted on-time, s; null for the middle of the longest off stretch. */
   readonly atSeconds: number | null
   readonly durationSeconds: number
-  /** Threshold, counts per bin above the baseline: a bin is on when counts - baseline reaches it. */
-  readonly countsAboveBaseline: number
+  /** Counts per bin above the baseline: a bin is on when counts - baseline reaches it. */
+  readonly thresholdAboveBaseline: number
+  readonly random: RandomSource
 }
 
 /** What became of a synthetic on-time after the baseline was fitted again with unchanged choices. */
 export interface PlantedEvent {
   readonly startSeconds: number
-  /** Whole bins, so at most half a bin from the wish; shorter when the record ends first. */
+  /** Whole bins, so at most half a bin from the wish; the length of the record at most; 0 when nothing could be planted. */
   readonly plantedSeconds: number
   /** Longest run of planted bins called on above the new baseline. */
   readonly survivingSeconds: number
@@ -25,62 +27,87 @@ export interface PlantedEvent {
   readonly survivingShare: number
   /** Longest run above the baseline as it was: what shot noise alone leaves. */
   readonly noiseOnlySeconds: number
-  /** The record with the planted counts, and the baseline fitted to it, for drawing. */
-  readonly trace: Trace
-  readonly baseline: Baseline
   readonly message: string
 }
 
 /**
  * Puts an on-time into a record and reports how much of it the baseline leaves: does it eat an event of this length here?
  *
- * The counts of the planted bins are replaced by Poisson counts of mean (b + A) x bin, b the baseline as fitted and A its signal;
- * nothing else changes, and the trace given is not touched. Without a start the place is the middle of the longest
- * stretch of usable bins below the threshold (the first of equals); an event longer than that stretch reaches over both its ends.
+ * Without a start the place is the middle of the longest stretch of usable bins below the threshold (the first of equals); an
+ * event longer than that stretch reaches over both its ends, and one that would leave the record is moved inside. The trace given is
+ * not touched.
  *
- * @param choices the choices the baseline was fitted with
- * @param unusable 1 at bins left out, or null; they break runs
- * @returns null when there is nothing to plant: no usable off bin to plant in, no signal, or a length below half a bin
+ * @param choices the choices the baseline was fitted with; excluded and not wholly exposed bins break runs
+ * @returns plantedSeconds 0, and why, when there is nothing to plant: no signal, no off bin, or a length below half a bin
  */
 export function plantEvent(
   trace: Trace,
   baseline: Baseline,
   choices: Recipe['baseline'],
-  unusable: Uint8Array | null,
   wish: PlantWish,
-  random: RandomSource,
-): PlantedEvent | null {
+): PlantedEvent {
   const { binSeconds, startSeconds, counts } = trace
+  const threshold = wish.thresholdAboveBaseline
+  const unusable = unusableBins(trace, choices.excludedSeconds)
   const before = baselineCounts(baseline, trace)
   const length = Math.min(Math.round(wish.durationSeconds / binSeconds), counts.length)
-  if (!(length >= 1 && baseline.onAboveCps > 0)) return null
+  if (!(length >= 1))
+    return nothingPlanted(
+      `An event must be at least one bin (${Number(binSeconds.toPrecision(3))} s) long. Enter a longer one.`,
+    )
+  if (!(baseline.onAboveCps > 0)) return nothingPlanted('This record has no on level to plant an event with.')
   const wanted =
     wish.atSeconds === null
-      ? middleOfLongestOff(counts, before, unusable, wish.countsAboveBaseline, length)
+      ? middleOfLongestOff(counts, before, unusable, threshold, length)
       : Math.round((wish.atSeconds - startSeconds) / binSeconds)
-  if (wanted === null || !Number.isFinite(wanted)) return null
+  if (wanted === null)
+    return nothingPlanted('No usable bin lies below the threshold. Give a start, or raise the threshold.')
   const first = Math.min(Math.max(wanted, 0), counts.length - length)
 
-  const planted = new Uint32Array(counts)
-  const signal = baseline.onAboveCps * binSeconds
-  for (let i = first; i < first + length; i++) planted[i] = poissonVariate(random, before[i] + signal)
-  const plantedTrace: Trace = { ...trace, counts: planted }
-  const fitted = fitBaseline(plantedTrace, choices, unusable)
-  const after = baselineCounts(fitted, plantedTrace)
+  const planted = plantInto(trace, before, first, length, baseline.onAboveCps * binSeconds, wish.random)
+  const after = baselineCounts(fitBaseline(planted, choices, unusable), planted)
   const run = (levels: Float64Array): number =>
-    longestRun(planted, levels, unusable, wish.countsAboveBaseline, first, first + length) * binSeconds
+    longestRun(planted.counts, levels, unusable, threshold, first, first + length) * binSeconds
+  const start = startSeconds + first * binSeconds
   const plantedSeconds = length * binSeconds
   const survivingSeconds = run(after)
   const noiseOnlySeconds = run(before)
   return {
-    startSeconds: startSeconds + first * binSeconds,
+    startSeconds: start,
     plantedSeconds,
     survivingSeconds,
     survivingShare: survivingSeconds / plantedSeconds,
     noiseOnlySeconds,
-    trace: plantedTrace,
-    baseline: fitted,
-    message: sentence(startSeconds + first * binSeconds, plantedSeconds, survivingSeconds, noiseOnlySeconds),
+    message: sentence(start, plantedSeconds, survivingSeconds, noiseOnlySeconds),
+  }
+}
+
+/**
+ * A copy of the trace in which `length` bins from `first` hold Poisson counts of mean baseline + signal; all others are as they were.
+ *
+ * @param baseline counts per bin, one entry a bin; signal in counts per bin
+ */
+export function plantInto(
+  trace: Trace,
+  baseline: Float64Array,
+  first: number,
+  length: number,
+  signal: number,
+  random: RandomSource,
+): Trace {
+  const counts = new Uint32Array(trace.counts)
+  for (let i = first; i < first + length; i++) counts[i] = poissonVariate(random, baseline[i] + signal)
+  return { ...trace, counts: fittingCounts(counts) }
+}
+
+function nothingPlanted(message: string): PlantedEvent {
+  return {
+    startSeconds: 0,
+    plantedSeconds: 0,
+    survivingSeconds: 0,
+    survivingShare: 0,
+    noiseOnlySeconds: 0,
+    message: `Nothing was planted. ${message}`,
   }
 }
 
@@ -107,7 +134,7 @@ function middleOfLongestOff(
 }
 
 function longestRun(
-  counts: Uint32Array,
+  counts: Uint16Array | Uint32Array,
   baseline: Float64Array,
   unusable: Uint8Array | null,
   threshold: number,

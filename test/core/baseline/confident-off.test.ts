@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { confidentOff } from '../../../src/core/baseline/confident-off.ts'
 
@@ -29,9 +29,9 @@ function slow(
   const usable = (i: number): boolean => unusable === null || unusable[i] === 0
   const passes = (i: number): boolean => i < 0 || i >= counts.length || !usable(i) || weights[i] > 0.5
   const sums = {
-    exposure: new Array<number>(knots).fill(0),
-    counts: new Array<number>(knots).fill(0),
-    support: new Array<number>(knots).fill(0),
+    exposure: Array.from({ length: knots }, () => 0),
+    counts: Array.from({ length: knots }, () => 0),
+    support: Array.from({ length: knots }, () => 0),
     onBins: 0,
     onExcess: 0,
     innerOnBins: 0,

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { baselineCounts, baselineCps } from '../../../src/core/baseline/baseline-at.ts'
 import { fitBaseline } from '../../../src/core/baseline/fit-baseline.ts'

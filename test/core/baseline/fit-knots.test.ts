@@ -42,7 +42,7 @@ function denseFit(
       (_, j) => bend * D.reduce((sum, row) => sum + row[i] * row[j], 0) + (i === j ? pull : 0),
     ),
   )
-  let eta = new Array<number>(n).fill(lnOff)
+  let eta = Array.from({ length: n }, () => lnOff)
   let inverse: Matrix = []
   for (let step = 0; step < 400; step++) {
     const hessian = penalty.map((row, i) => row.map((v, j) => v + (i === j ? Math.exp(eta[i]) * W[i] : 0)))

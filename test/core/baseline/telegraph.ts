@@ -43,7 +43,7 @@ export function telegraph(options: {
   let on = uniform() < 0.5
   for (let t = 0; t < seconds; ) {
     let dwell = 0.01 * uniform() ** (on ? -2 : -1 / 0.6)
-    while (on && uniform() > Math.exp(-dwell / tauSeconds)) dwell = 0.01 * uniform() ** -2
+    if (on) while (uniform() > Math.exp(-dwell / tauSeconds)) dwell = 0.01 * uniform() ** -2
     const end = Math.min(seconds, t + dwell)
     if (on)
       for (let i = Math.floor(t / binSeconds); i < bins && i * binSeconds < end; i++)

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { fitTwoPoisson } from '../../../src/core/baseline/two-poisson.ts'
 import { poissonCount, uniformSource } from './telegraph.ts'

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { AFTER_END, BEFORE_START, binPhotons, PARTIAL_BIN } from '../../../src/core/photons/bin-photons.ts'
 import type { PhotonStream } from '../../../src/core/photons/photon-stream.ts'
@@ -27,7 +27,7 @@ function slowBins(
   denominator: bigint,
 ): number[] {
   const bins = Number((BigInt(end - start) * denominator) / numerator)
-  const counts = new Array<number>(bins).fill(0)
+  const counts = Array.from({ length: bins }, () => 0)
   for (const t of ticks) {
     if (t < start || t >= end) continue
     const k = Number((BigInt(t - start) * denominator) / numerator)
@@ -123,7 +123,16 @@ describe('binPhotons', () => {
   })
 
   it('keeps 16 bits until a count needs more', () => {
-    const many = (n: number) => binPhotons(streamOf(new Array<number>(n).fill(3), 1, 0, 10), 10).counts
+    const many = (n: number) =>
+      binPhotons(
+        streamOf(
+          Array.from({ length: n }, () => 3),
+          1,
+          0,
+          10,
+        ),
+        10,
+      ).counts
     expect(many(65535)).toBeInstanceOf(Uint16Array)
     expect(many(65536)).toBeInstanceOf(Uint32Array)
     expect(many(65536)[0]).toBe(65536)

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { GATE_CLASSES, type GateWindow } from '../../../src/core/photons/gate.ts'
 import { gateCodes } from '../../../src/core/photons/gate-codes.ts'
@@ -12,7 +12,7 @@ function slowCodes(windows: readonly GateWindow[], bins: number, startSeconds: n
   return Array.from({ length: bins }, (_, i) => {
     const seen = new Set<number>()
     for (let s = 0; s < 64; s++) seen.add(classAt(startSeconds + i + (s + 0.5) / 64))
-    return seen.size === 1 ? ([...seen][0] as number) : 3
+    return seen.size === 1 ? [...seen][0] : 3
   })
 }
 

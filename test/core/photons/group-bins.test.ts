@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { binPhotons, PARTIAL_BIN } from '../../../src/core/photons/bin-photons.ts'
 import { groupBins } from '../../../src/core/photons/group-bins.ts'

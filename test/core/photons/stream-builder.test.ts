@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import type { PhotonStream } from '../../../src/core/photons/photon-stream.ts'
 import { photonStreamBuilder } from '../../../src/core/photons/stream-builder.ts'
