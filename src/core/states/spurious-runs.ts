@@ -1,0 +1,178 @@
+import type { DurationGrid } from './duration-grid.ts'
+import { hostsLonger, overColumns, type ColumnDwells } from './column-dwells.ts'
+import type { ThresholdBlock, ThresholdTable } from './threshold-table.ts'
+
+/** Chances of a wrong state per bin at one threshold. */
+export interface ErrorRates {
+  readonly falseOnPerBin: number
+  readonly falseOffPerBin: number
+}
+
+/**
+ * Expected number of observed runs of m bins that a true dwell of n bins leaves when each of its bins is missed with
+ * chance `missed`, independently: (1 - p)^m [2p + (n - m - 1) p^2] for m < n, (1 - p)^n for m = n, 0 beyond.
+ * Derived here: a run of m < n bins either touches one end of the dwell (two places, one missed neighbour) or neither.
+ */
+export function splitRuns(n: number, missed: number, m: number): number {
+  if (m > n) return 0
+  const kept = (1 - missed) ** m
+  return m === n ? kept : kept * (2 * missed + (n - m - 1) * missed * missed)
+}
+
+/**
+ * Expected number of false runs of m bins inside a true dwell of n bins whose bins are called wrong with chance
+ * `wrong`: (n - m - 1) (1 - p)^2 p^m, which leaves at least one right bin on each side; 0 for m > n - 2.
+ */
+export function interiorRuns(n: number, wrong: number, m: number): number {
+  return m > n - 2 ? 0 : (n - m - 1) * (1 - wrong) ** 2 * wrong ** m
+}
+
+/** Expected numbers of observed dwells per column of the duration grid, beside the number observed. */
+export interface ExpectedSpurious {
+  /** Made by shot noise inside dwells of the other state. */
+  readonly spurious: Float64Array
+  /** Pieces of longer dwells of this state that shot noise has split. */
+  readonly split: Float64Array
+  /** Complete dwells seen. */
+  readonly observed: Float64Array
+}
+
+/**
+ * Spurious and split dwells to be expected in one row of the threshold table, per column, from the tallies alone: cost
+ * grows with columns only, cheap enough for every step of a drag.
+ *
+ * The formulas want the true dwells. The observed dwells stand in for them: for `spurious` those of the other state;
+ * for `split` those of this state less the expected spurious ones. Both are right to first order in the error rates; where
+ * the rates are so high that dwells are mostly noise (threshold inside a level) the numbers only say so. Dwells with an unseen
+ * start are taken at their mean length. In a gate class, the numbers of the whole record are scaled by the class's share of the bins
+ * in which such dwells can arise.
+ *
+ * @param group index into table.groups
+ * @param state 0 off, 1 on: the dwells in question
+ */
+export function expectedSpurious(
+  table: ThresholdTable,
+  group: number,
+  row: number,
+  state: 0 | 1,
+  errors: ErrorRates,
+): ExpectedSpurious {
+  const other = state === 0 ? 1 : 0
+  const columns = table.grid.edges.length - 1
+  const own = dwellsOfRow(table.blocks[0][state], table.grid, row)
+  const hosts = dwellsOfRow(table.blocks[0][other], table.grid, row)
+  const [wrong, missed] =
+    state === 1
+      ? [errors.falseOnPerBin, errors.falseOffPerBin]
+      : [errors.falseOffPerBin, errors.falseOnPerBin]
+  const spurious = spuriousPerColumn(hosts, wrong, table.grid)
+  const denoised = withoutSpurious(own, spurious, table.grid)
+  const split = overColumns(table.grid, hostsLonger(denoised, table.grid), (m, longer, bins) =>
+    longer > 0 ? (1 - missed) ** m * (2 * missed * longer + missed * missed * (bins - (m + 1) * longer)) : 0,
+  )
+  if (group !== 0) {
+    scale(spurious, share(table.blocks[group][other], table.blocks[0][other], row))
+    scale(split, share(table.blocks[group][state], table.blocks[0][state], row))
+  }
+  const observed = table.blocks[group][state].completeCount.slice(row * columns, (row + 1) * columns)
+  return { spurious, split, observed }
+}
+
+/** Expected false runs of each duration inside the given dwells of the other state, summed over each column. */
+export function spuriousPerColumn(hosts: ColumnDwells, wrong: number, grid: DurationGrid): Float64Array {
+  return overColumns(
+    grid,
+    hostsLonger(hosts, grid),
+    (m, longer, bins) => Math.max(0, bins - (m + 1) * longer) * (1 - wrong) ** 2 * wrong ** m,
+  )
+}
+
+/**
+ * Chance that an observed dwell is spurious, per column: expected spurious over observed, 0..1. The observed number is
+ * pooled over durations within a quarter of each other, so that one dwell more or less does not decide, and the chance never rises with duration.
+ */
+export function spuriousChance(
+  spurious: Float64Array,
+  observed: Float64Array,
+  grid: DurationGrid,
+): Float64Array {
+  const { edges } = grid
+  const chance = new Float64Array(observed.length)
+  let least = 1
+  let from = 0
+  let to = 0
+  let pooled = 0
+  for (let c = 0; c < chance.length; c++) {
+    const m = edges[c]
+    while (to < observed.length && edges[to] <= 1.25 * m) pooled += observed[to++]
+    while (1.25 * edges[from] < m) pooled -= observed[from++]
+    const perDuration = pooled / (edges[to] - edges[from])
+    const expected = spurious[c] / (edges[c + 1] - edges[c])
+    if (expected > 0 && perDuration > 0) least = Math.min(least, expected / perDuration)
+    else if (expected === 0) least = 0
+    chance[c] = least
+  }
+  return chance
+}
+
+/** At most this share of the dwells of any duration may be spurious ... */
+const SAFE_SHARE = 0.05
+
+/**
+ * Smallest duration, bins, from which on the expected spurious dwells are fewer than 5 % of the observed at every duration.
+ * Durations at which nothing was observed count as one observed dwell: fewer than 0.05 expected spurious dwells
+ * spoil nothing. One past the end of the grid when no duration is safe.
+ */
+export function spuriousSafeBins(
+  table: ThresholdTable,
+  group: number,
+  row: number,
+  state: 0 | 1,
+  errors: ErrorRates,
+): number {
+  const { spurious, observed } = expectedSpurious(table, group, row, state, errors)
+  let safe = table.grid.edges[spurious.length]
+  for (let c = spurious.length - 1; c >= 0; c--) {
+    if (!(spurious[c] < SAFE_SHARE * Math.max(1, observed[c]))) break
+    safe = table.grid.edges[c]
+  }
+  return safe
+}
+
+/** All dwells of one state in a row of the table: complete, censored and, at their mean length, those of unseen start. */
+function dwellsOfRow(block: ThresholdBlock, grid: DurationGrid, row: number): ColumnDwells {
+  const columns = grid.edges.length - 1
+  const count = new Float64Array(columns)
+  const bins = new Float64Array(columns)
+  let seen = 0
+  for (let c = 0; c < columns; c++) {
+    const cell = row * columns + c
+    count[c] = block.completeCount[cell] + block.censoredCount[cell]
+    bins[c] = count[c] * grid.edges[c] + block.completeSum[cell] + block.censoredSum[cell]
+    seen += bins[c]
+  }
+  const unseen = block.unseenStarts[row]
+  if (unseen > 0) {
+    const total = block.stateBins[row] - seen
+    let c = 0
+    while (c < columns - 1 && grid.edges[c + 1] <= total / unseen) c++
+    count[c] += unseen
+    bins[c] += total
+  }
+  return { count, bins }
+}
+
+/** The dwells less the expected spurious ones, never below none. */
+function withoutSpurious(dwells: ColumnDwells, spurious: Float64Array, grid: DurationGrid): ColumnDwells {
+  const count = dwells.count.map((n, c) => Math.max(0, n - spurious[c]))
+  const bins = dwells.bins.map((b, c) => (dwells.count[c] > 0 ? (b * count[c]) / dwells.count[c] : 0))
+  return { count, bins: bins.map((b, c) => Math.max(b, count[c] * grid.edges[c])) }
+}
+
+function share(part: ThresholdBlock, whole: ThresholdBlock, row: number): number {
+  return whole.stateBins[row] > 0 ? part.stateBins[row] / whole.stateBins[row] : 0
+}
+
+function scale(values: Float64Array, by: number): void {
+  for (let i = 0; i < values.length; i++) values[i] *= by
+}
