@@ -1,3 +1,5 @@
+import type { TableGroup } from '../states/threshold-table.ts'
+
 /** Censoring of a dwell: complete, start unseen, end unseen, or both. */
 export const CENSORING = ['complete', 'start-unseen', 'end-unseen', 'both-unseen'] as const
 
@@ -8,6 +10,8 @@ export const CENSORING = ['complete', 'start-unseen', 'end-unseen', 'both-unseen
 export interface DwellTable {
   readonly rows: number
   readonly binSeconds: number
+  /** Which rows fits and the on fraction use: `all`, or the pieces inside windows of one class (`gateAtStart`). */
+  readonly gate: TableGroup
   readonly startSeconds: Float64Array
   readonly durationBins: Uint32Array
   /** 0 off, 1 on. */
@@ -19,6 +23,6 @@ export interface DwellTable {
   readonly entryAgeBins: Uint32Array
   /** Index into CENSORING. */
   readonly censoring: Uint8Array
-  /** Chance that a dwell of this length is made by shot noise, 0..1. */
+  /** Chance that a dwell of this length is made by shot noise, 0..1; NaN when error rates were not given. */
   readonly spuriousProbability: Float32Array
 }
