@@ -13,22 +13,26 @@ export interface BinLikelihood {
 }
 
 /** Points per bin for the bin-averaged survival. */
-const SURVIVAL_POINTS = 6
+const SURVIVAL_POINTS = 8
 /** The reference duration may not fall below this share of a bin. */
 const LEAST_REFERENCE = 0.05
 
 /**
  * ln of the bin-averaged survival over [(m - 1) Delta - delta, m Delta - delta], delta = (1 - 2 theta) Delta: the chance
- * that a dwell is observed for at least m bins.
+ * that a dwell is observed for at least m bins. With S = 1 up to t0, the mean over [t0, t0 + Delta] is S(t0) minus
+ * the integral of (1 - x) f(t0 + x Delta) Delta over x in [0, 1], which needs the density only.
  */
 export function lnMeanSurvival(at: LawAt, m: number, shiftBins: number, binSeconds: number): number {
   const { nodes, weights } = gaussLegendre(SURVIVAL_POINTS)
-  let sum = 0
+  const from = m - shiftBins - 1
+  const lnStart = at.logSurvival(Math.max(0, from) * binSeconds)
+  let lost = 0
   for (let i = 0; i < SURVIVAL_POINTS; i++) {
-    const t = (m - shiftBins - 0.5 + 0.5 * nodes[i]) * binSeconds
-    sum += 0.5 * weights[i] * Math.exp(at.logSurvival(t))
+    const x = 0.5 + 0.5 * nodes[i]
+    if (from + x <= 0) continue
+    lost += 0.5 * weights[i] * (1 - x) * Math.exp(at.logDensity((from + x) * binSeconds) - lnStart)
   }
-  return Math.log(sum)
+  return lnStart + Math.log1p(-lost * binSeconds)
 }
 
 /** Bins by which the kernel of an observed duration sits below it: 1 - 2 theta. */
@@ -37,7 +41,10 @@ export function edgeShift(sample: Pick<DwellSample, 'edgeShare'>): number {
 }
 
 /** Duration, s, at which the law is anchored: the lowest true duration that can be seen as `shortestBins`. */
-export function referenceSeconds(sample: Pick<DwellSample, 'edgeShare' | 'binSeconds'>, shortestBins: number): number {
+export function referenceSeconds(
+  sample: Pick<DwellSample, 'edgeShare' | 'binSeconds'>,
+  shortestBins: number,
+): number {
   return Math.max(LEAST_REFERENCE, shortestBins - edgeShift(sample) - 1) * sample.binSeconds
 }
 
@@ -99,7 +106,10 @@ export function atLeast(
 ): { bins: Float64Array; weights: Float64Array } {
   const keep: number[] = []
   for (let i = 0; i < bins.length; i++) if (bins[i] >= shortestBins) keep.push(i)
-  return { bins: Float64Array.from(keep, (i) => bins[i]), weights: Float64Array.from(keep, (i) => weights[i]) }
+  return {
+    bins: Float64Array.from(keep, (i) => bins[i]),
+    weights: Float64Array.from(keep, (i) => weights[i]),
+  }
 }
 
 function total(weights: Float64Array): number {

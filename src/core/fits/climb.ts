@@ -45,13 +45,19 @@ export function climb(
     const model = localModel(at, x, best, ranges, steps)
     const step = model === null ? null : newtonStep(model, x, ranges)
     let moved = false
-    if (step !== null) {
+    if (step !== null && model !== null) {
+      // Predicted gain of the full step: nothing to win means that this is the summit.
+      const predicted = 0.5 * model.gradient.reduce((sum, slope, i) => sum + slope * step[i], 0)
+      if (predicted < LEAST_GAIN && Number.isFinite(best))
+        return { x, value: best, evaluations, converged: true }
       for (let damping = 1; damping > 1e-4; damping *= 0.35) {
         const trial = x.map((value, i) => clip(value + damping * step[i], ranges[i]))
         const value = at(trial)
         if (value > best) {
           const gain = value - best
-          steps = steps.map((size, i) => Math.max(1e-4 * scales[i], Math.min(size, 0.3 * Math.abs(trial[i] - x[i]) + 1e-3 * scales[i])))
+          steps = steps.map((size, i) =>
+            Math.max(1e-4 * scales[i], Math.min(size, 0.3 * Math.abs(trial[i] - x[i]) + 1e-3 * scales[i])),
+          )
           x = trial
           best = value
           moved = gain > LEAST_GAIN
@@ -60,12 +66,14 @@ export function climb(
       }
       if (!moved) {
         // Newton finds nothing better: a summit, if the model is a dome here and no neighbour of it is higher.
-        if (isSummit(at, x, best, ranges, scales)) return { x, value: best, evaluations, converged: Number.isFinite(best) }
+        if (isSummit(at, x, best, ranges, scales))
+          return { x, value: best, evaluations, converged: Number.isFinite(best) }
       }
     }
     if (!moved) {
       const simplex = minimiseNelderMead(
-        (trial) => (trial.some((value, i) => value < ranges[i].low || value > ranges[i].high) ? Infinity : -at(trial)),
+        (trial) =>
+          trial.some((value, i) => value < ranges[i].low || value > ranges[i].high) ? Infinity : -at(trial),
         x,
         scales.map((size, i) => (x[i] + size > ranges[i].high ? -size : size)),
         { tolerance: 1e-10, mostEvaluations: 300 },
@@ -75,19 +83,21 @@ export function climb(
         x = simplex.x
         best = -simplex.value
       }
-      if (!(gain > LEAST_GAIN)) return { x, value: best, evaluations, converged: Number.isFinite(best) && simplex.converged }
+      if (!(gain > LEAST_GAIN))
+        return { x, value: best, evaluations, converged: Number.isFinite(best) && simplex.converged }
     }
   }
   return { x, value: best, evaluations, converged: false }
 }
 
-interface LocalModel {
+/** Second-order model of a function around a point. */
+export interface LocalModel {
   readonly gradient: readonly number[]
   readonly hessian: readonly (readonly number[])[]
 }
 
 /** Gradient and second differences; one-sided at a bound. Null where f is not finite nearby. */
-function localModel(
+export function localModel(
   at: (x: readonly number[]) => number,
   x: readonly number[],
   value: number,
@@ -136,9 +146,14 @@ function localModel(
 }
 
 /** The Newton step of a dome; coordinates pressed against their bound are left out. Null when it is not a dome. */
-function newtonStep({ gradient, hessian }: LocalModel, x: readonly number[], ranges: readonly Range[]): number[] | null {
+function newtonStep(
+  { gradient, hessian }: LocalModel,
+  x: readonly number[],
+  ranges: readonly Range[],
+): number[] | null {
   const free = x.map(
-    (value, i) => !((value <= ranges[i].low && gradient[i] < 0) || (value >= ranges[i].high && gradient[i] > 0)),
+    (value, i) =>
+      !((value <= ranges[i].low && gradient[i] < 0) || (value >= ranges[i].high && gradient[i] > 0)),
   )
   const live = free.flatMap((isFree, i) => (isFree ? [i] : []))
   if (live.length === 0) return x.map(() => 0)
@@ -150,7 +165,10 @@ function newtonStep({ gradient, hessian }: LocalModel, x: readonly number[], ran
   const [[a, b], [, d]] = hessian
   const determinant = a * d - b * b
   if (!(a < 0) || !(determinant > 0)) return null
-  return [(-d * gradient[0] + b * gradient[1]) / determinant, (b * gradient[0] - a * gradient[1]) / determinant]
+  return [
+    (-d * gradient[0] + b * gradient[1]) / determinant,
+    (b * gradient[0] - a * gradient[1]) / determinant,
+  ]
 }
 
 /** No neighbour a hundredth of a scale away is higher by more than matters. */

@@ -38,7 +38,17 @@ export function fitLaw(law: Law, sample: DwellSample, shortestBins: number, opti
       'too-few-dwells',
       `${likelihood.complete} complete dwells of at least ${shortestBins} bins; a fit needs ${FEWEST_DWELLS}. Lower the shortest fitted dwell or record longer.`,
     )
-    return { ...common, coordinates: [], parameters, logLikelihood: null, aicc: null, bic: null, evaluations: 0, status, message }
+    return {
+      ...common,
+      coordinates: [],
+      parameters,
+      logLikelihood: null,
+      aicc: null,
+      bic: null,
+      evaluations: 0,
+      status,
+      message,
+    }
   }
   const reference = referenceSeconds(sample, shortestBins)
   const chosen = atLeast(sample.completeBins, sample.completeWeights, shortestBins)

@@ -1,6 +1,6 @@
 import type { Law } from '../laws/law.ts'
 import { chiSquareQuantile } from '../numeric/chi-square.ts'
-import { climb, type Range } from './climb.ts'
+import { climb, localModel, type Range } from './climb.ts'
 import type { Estimate, FitStatus } from './fit.ts'
 import { profileLimit } from './profile-limit.ts'
 
@@ -62,9 +62,12 @@ export function maximiseLaw(
   let edge = Number.NEGATIVE_INFINITY
   let edgeAlpha = Number.NaN
   if (kappa >= 0) {
-    const along = climb(([alpha]) => logLikelihood([alpha, 0]), [Math.max(x[0], 1.2)], [{ low: 1 + 1e-6, high: ranges[0].high }], [
-      scalesOf(law, x, dwells)[0],
-    ])
+    const along = climb(
+      ([alpha]) => logLikelihood([alpha, 0]),
+      [Math.max(x[0], 1.2)],
+      [{ low: 1 + 1e-6, high: ranges[0].high }],
+      [scalesOf(law, x, dwells)[0]],
+    )
     evaluations += along.evaluations
     edge = along.value
     edgeAlpha = along.x[0]
@@ -74,19 +77,43 @@ export function maximiseLaw(
     }
   }
   if (!Number.isFinite(value)) {
-    return failed(law, evaluations, 'not-finite', 'The likelihood is not finite for any parameter tried: check the shortest fitted dwell.')
+    return failed(
+      law,
+      evaluations,
+      'not-finite',
+      'The likelihood is not finite for any parameter tried: check the shortest fitted dwell.',
+    )
   }
   if (!summit.converged && value === summit.value) {
     return {
-      ...failed(law, evaluations, 'not-converged', 'The search did not settle: the dwells hardly constrain this law.'),
+      ...failed(
+        law,
+        evaluations,
+        'not-converged',
+        'The search did not settle: the dwells hardly constrain this law.',
+      ),
       coordinates: x,
       logLikelihood: value,
     }
   }
   const reported = law.parametersOf(x)
-  const atEdge = x.map((v, i) => v <= ranges[i].low || v >= ranges[i].high || nearEdge(v, ranges[i], law.coordinates[i].name))
+  const atEdge = x.map(
+    (v, i) => v <= ranges[i].low || v >= ranges[i].high || nearEdge(v, ranges[i], law.coordinates[i].name),
+  )
   const level = value - 0.5 * chiSquareQuantile(options.confidence, 1)
-  const scales = scalesOf(law, x.map((v, i) => (i === kappa ? Math.max(v, 0.02 * start[i]) : v)), dwells)
+  const errors = options.intervals
+    ? standardErrors(
+        logLikelihood,
+        x,
+        value,
+        ranges,
+        scalesOf(
+          law,
+          x.map((v, i) => (i === kappa ? Math.max(v, 0.02 * start[i]) : v)),
+          dwells,
+        ),
+      )
+    : []
   const parameters: Record<string, Estimate> = {}
   for (const [i, { name, unit }] of law.parameters.entries()) {
     const finite = Number.isFinite(reported[i]) ? reported[i] : null
@@ -95,8 +122,10 @@ export function maximiseLaw(
       continue
     }
     const none = i === kappa && edge > level
-    const below = none ? { x: 0, evaluations: 0 } : profileLimit(logLikelihood, x, level, i, -1, ranges, scales)
-    const above = profileLimit(logLikelihood, x, level, i, 1, ranges, scales)
+    const below = none
+      ? { x: 0, evaluations: 0 }
+      : profileLimit(logLikelihood, x, level, i, -1, ranges, errors)
+    const above = profileLimit(logLikelihood, x, level, i, 1, ranges, errors)
     evaluations += below.evaluations + above.evaluations
     parameters[name] = { estimate: finite, ...reportedLimits(law, x, i, below.x, above.x), unit }
   }
@@ -116,6 +145,25 @@ export function maximiseLaw(
     status: options.intervals ? 'ok' : 'no-interval',
     message: '',
   }
+}
+
+/** Standard errors from the curvature at the maximum; the first guess of the width of the intervals. */
+function standardErrors(
+  f: (x: readonly number[]) => number,
+  x: readonly number[],
+  value: number,
+  ranges: readonly Range[],
+  scales: readonly number[],
+): number[] {
+  const model = localModel(f, x, value, ranges, scales)
+  if (model === null) return [...scales]
+  const { hessian } = model
+  if (x.length === 1) return [hessian[0][0] < 0 ? 1 / Math.sqrt(-hessian[0][0]) : scales[0]]
+  const determinant = hessian[0][0] * hessian[1][1] - hessian[0][1] ** 2
+  return x.map((_, i) => {
+    const variance = -hessian[1 - i][1 - i] / determinant
+    return determinant > 0 && variance > 0 ? Math.sqrt(variance) : scales[i]
+  })
 }
 
 function nearEdge(value: number, range: Range, name: string): boolean {

@@ -19,7 +19,16 @@ export function lnUpperGamma(s: number, x: number): number {
   if (x === Number.POSITIVE_INFINITY) return Number.NEGATIVE_INFINITY
   if (s > 0) return lnGamma(s) + lnGammaQ(s, x)
   if (x > 1.5) return lnByFraction(s, x)
+  // Recursion divides by s, s + 1, ...: near whole numbers, and far down, quadrature is the safe way.
+  if (s > -3 && Math.abs(s - Math.round(s)) > 0.05) return lnByRecursion(s, x)
   return lnByQuadrature(s, x)
+}
+
+/** Gamma(s, x) = [Gamma(s + 1, x) - x^s e^-x] / s (DLMF 8.8.2), up to the first positive order. */
+function lnByRecursion(s: number, x: number): number {
+  const next = s + 1 > 0 ? lnGamma(s + 1) + lnGammaQ(s + 1, x) : lnByRecursion(s + 1, x)
+  const edge = s * Math.log(x) - x
+  return edge + Math.log(-Math.expm1(next - edge)) - Math.log(-s)
 }
 
 /** Gamma(s, x) = e^-x x^s / (x + 1 - s - 1(1 - s)/(x + 3 - s - ...)). */

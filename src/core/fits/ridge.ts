@@ -1,0 +1,61 @@
+import { minimise1d } from '../numeric/minimise.ts'
+import type { Range } from './climb.ts'
+
+/** A predicted gain in ln L below this is not worth another evaluation. */
+const LEAST_GAIN = 1e-6
+const MOST_ROUNDS = 25
+
+/**
+ * Maximum of a smooth function of one coordinate near a good start: parabolas through three points, clipped to the
+ * range; Brent's method around the start where the function is not a dome.
+ * @param error rough width of the dome
+ */
+export function ridge(
+  f: (x: number) => number,
+  start: number,
+  range: Range,
+  error: number,
+): { x: number; value: number } {
+  let x = Math.min(range.high, Math.max(range.low, start))
+  let value = f(x)
+  let h = 0.2 * error
+  for (let round = 0; round < MOST_ROUNDS; round++) {
+    const left = x - h < range.low ? x + 2 * h : x - h
+    const right = x + h > range.high ? x - 2 * h : x + h
+    const fl = f(left)
+    const fr = f(right)
+    // Newton's divided differences of the parabola through (x, left, right).
+    const d1 = (fl - value) / (left - x)
+    const d2 = ((fr - value) / (right - x) - d1) / (right - left)
+    const slope = d1 + d2 * (x - left)
+    if (!(d2 < 0) || !Number.isFinite(slope)) return wide(f, x, value, range, error)
+    const step = -slope / (2 * d2)
+    const next = Math.min(
+      range.high,
+      Math.max(range.low, x + Math.max(-8 * error, Math.min(8 * error, step))),
+    )
+    const gain = slope * (next - x) + d2 * (next - x) ** 2
+    if (gain < LEAST_GAIN) return { x, value: value + Math.max(0, gain) }
+    const reached = f(next)
+    if (reached < value) {
+      h *= 0.3
+      if (h < 1e-4 * error) return { x, value }
+      continue
+    }
+    // A parabola that foretold the height to a part in ten thousand of the level needs no second look.
+    if (Math.abs(reached - value - gain) < 1e-3 * gain || reached - value < LEAST_GAIN) {
+      if (Math.abs(reached - value - gain) < 2e-5) return { x: next, value: reached }
+    }
+    h = Math.max(0.02 * error, Math.min(0.2 * error, 0.3 * Math.abs(next - x)))
+    x = next
+    value = reached
+  }
+  return { x, value }
+}
+
+function wide(f: (x: number) => number, x: number, value: number, range: Range, error: number) {
+  const low = Math.max(range.low, x - 30 * error)
+  const high = Math.min(range.high, x + 30 * error)
+  const found = minimise1d((at) => -f(at), low, high, { tolerance: 1e-3 * error, mostEvaluations: 60 })
+  return -found.value > value ? { x: found.x, value: -found.value } : { x, value }
+}
