@@ -41,11 +41,12 @@ export interface ExpectedSpurious {
  * Spurious and split dwells to be expected in one row of the threshold table, per column, from the tallies alone: cost
  * grows with columns only, cheap enough for every step of a drag.
  *
- * The formulas want the true dwells. The observed dwells stand in for them: for `spurious` those of the other state;
- * for `split` those of this state less the expected spurious ones. Both are right to first order in the error rates; where
- * the rates are so high that dwells are mostly noise (threshold inside a level) the numbers only say so. Dwells with an unseen
- * start are taken at their mean length. In a gate class, the numbers of the whole record are scaled by the class's share of the bins
- * in which such dwells can arise.
+ * The formulas want the true dwells; the observed ones stand in for them after two corrections. The expected spurious dwells are taken
+ * away (never more than were seen), and as each of them has cut a dwell of the other state in two, that state's
+ * number of dwells is lowered by as many, its bins kept. This is right to first order in (error rate x dwell length); where
+ * dwells are mostly noise (threshold inside a level) the numbers say no more than that. Dwells with an unseen start are taken at their
+ * mean length. In a gate class, the numbers of the whole record are scaled by the class's share of the bins in which
+ * such dwells can arise.
  *
  * @param group index into table.groups
  * @param state 0 off, 1 on: the dwells in question
@@ -58,24 +59,31 @@ export function expectedSpurious(
   errors: ErrorRates,
 ): ExpectedSpurious {
   const other = state === 0 ? 1 : 0
-  const columns = table.grid.edges.length - 1
-  const own = dwellsOfRow(table.blocks[0][state], table.grid, row)
-  const hosts = dwellsOfRow(table.blocks[0][other], table.grid, row)
+  const { grid, blocks } = table
+  const columns = grid.edges.length - 1
+  const rowCells = (cells: Float64Array): Float64Array => cells.subarray(row * columns, (row + 1) * columns)
   const [wrong, missed] =
     state === 1
       ? [errors.falseOnPerBin, errors.falseOffPerBin]
       : [errors.falseOffPerBin, errors.falseOnPerBin]
-  const spurious = spuriousPerColumn(hosts, wrong, table.grid)
-  const denoised = withoutSpurious(own, spurious, table.grid)
-  const split = overColumns(table.grid, hostsLonger(denoised, table.grid), (m, longer, bins) =>
-    longer > 0 ? (1 - missed) ** m * (2 * missed * longer + missed * missed * (bins - (m + 1) * longer)) : 0,
+  const own = dwellsOfRow(blocks[0][state], grid, row)
+  const hosts = dwellsOfRow(blocks[0][other], grid, row)
+  const removedOwn = lesser(spuriousPerColumn(hosts, wrong, grid), rowCells(blocks[0][state].completeCount))
+  const removedHosts = lesser(spuriousPerColumn(own, missed, grid), rowCells(blocks[0][other].completeCount))
+  const spurious = spuriousPerColumn(denoised(hosts, removedHosts, removedOwn, grid), wrong, grid)
+  const split = overColumns(
+    grid,
+    hostsLonger(denoised(own, removedOwn, removedHosts, grid), grid),
+    (m, longer, bins) =>
+      longer > 0
+        ? (1 - missed) ** m * (2 * missed * longer + missed * missed * Math.max(0, bins - (m + 1) * longer))
+        : 0,
   )
   if (group !== 0) {
-    scale(spurious, share(table.blocks[group][other], table.blocks[0][other], row))
-    scale(split, share(table.blocks[group][state], table.blocks[0][state], row))
+    scale(spurious, share(blocks[group][other], blocks[0][other], row))
+    scale(split, share(blocks[group][state], blocks[0][state], row))
   }
-  const observed = table.blocks[group][state].completeCount.slice(row * columns, (row + 1) * columns)
-  return { spurious, split, observed }
+  return { spurious, split, observed: rowCells(blocks[group][state].completeCount).slice() }
 }
 
 /** Expected false runs of each duration inside the given dwells of the other state, summed over each column. */
@@ -162,11 +170,26 @@ function dwellsOfRow(block: ThresholdBlock, grid: DurationGrid, row: number): Co
   return { count, bins }
 }
 
-/** The dwells less the expected spurious ones, never below none. */
-function withoutSpurious(dwells: ColumnDwells, spurious: Float64Array, grid: DurationGrid): ColumnDwells {
-  const count = dwells.count.map((n, c) => Math.max(0, n - spurious[c]))
-  const bins = dwells.bins.map((b, c) => (dwells.count[c] > 0 ? (b * count[c]) / dwells.count[c] : 0))
-  return { count, bins: bins.map((b, c) => Math.max(b, count[c] * grid.edges[c])) }
+function lesser(a: Float64Array, b: Float64Array): Float64Array {
+  return a.map((value, c) => Math.min(value, b[c]))
+}
+
+function total(values: Float64Array): number {
+  return values.reduce((all, value) => all + value, 0)
+}
+
+/** Dwells less the spurious ones among them, joined again where spurious dwells of the other state have cut them. */
+function denoised(
+  dwells: ColumnDwells,
+  spurious: Float64Array,
+  cuts: Float64Array,
+  grid: DurationGrid,
+): ColumnDwells {
+  const left = dwells.count.map((n, c) => n - spurious[c])
+  const number = total(left)
+  const joined = number > 0 ? Math.max(0, number - total(cuts)) / number : 0
+  const bins = dwells.bins.map((b, c) => Math.max(0, b - spurious[c] * grid.edges[c]))
+  return { count: left.map((n) => n * joined), bins }
 }
 
 function share(part: ThresholdBlock, whole: ThresholdBlock, row: number): number {
