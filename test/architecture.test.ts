@@ -47,6 +47,7 @@ const RANKS: Record<string, number> = {
 const SAME_RANK: Record<string, readonly string[]> = {
   'figures/paint': ['figures/scene'],
   'session/schema': [],
+  'state/results': ['state/choices', 'state/view'],
   'worker/protocol': ['session/schema'],
   'worker/client': [],
   'ui/bridge': [],

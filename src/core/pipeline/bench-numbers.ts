@@ -1,52 +1,21 @@
-import type { Baseline } from '../baseline/baseline.ts'
-import { dwellSummary, type StateDwells } from './state-dwells.ts'
+import { dwellSummary } from './state-dwells.ts'
 import { dwellTableOf } from '../dwells/dwell-table-of.ts'
 import type { DwellTable } from '../dwells/dwell-table.ts'
 import { sampleFromDwells } from '../dwells/dwell-sample-of.ts'
 import { onFraction } from '../dwells/on-fraction.ts'
-import type { Estimate } from '../fits/fit.ts'
 import type { Recipe } from '../recipe/recipe.ts'
 import { edgeShare } from '../states/edge-share.ts'
 import { spuriousSafeBins } from '../states/spurious-runs.ts'
 import { statesAt } from '../states/states-at.ts'
-import type { StateFits, ThresholdProduct } from './analysis-products.ts'
-import { lawComparisons, type LawComparison } from './law-comparisons.ts'
+import type { ThresholdProduct } from './analysis-products.ts'
+import { lawComparisons } from './law-comparisons.ts'
 import { fitState } from './fit-row.ts'
-import { flagsOf, type Flag } from './flags.ts'
-import { mixedBins, type MixedBins } from './mixed-bins.ts'
+import { flagsOf } from './flags.ts'
+import { mixedBins } from './mixed-bins.ts'
 import type { PreparedTrace } from './prepare-trace.ts'
-import { scanState, type ScanRow } from './scan-state.ts'
+import { scanState } from './scan-state.ts'
 import { rowOf, thresholdOf } from './study-thresholds.ts'
-
-/** Everything known of one state (off or on) at the settled threshold. */
-export interface StateNumbers {
-  readonly dwells: StateDwells
-  readonly fits: StateFits
-  readonly comparisons: readonly LawComparison[]
-  /** Shown law's alpha (or its first parameter) against the shortest fitted dwell. */
-  readonly scan: readonly ScanRow[]
-}
-
-/** The settled numbers of one emitter at one threshold, from the exact list of dwells. */
-export interface BenchNumbers {
-  /** Counts per bin on the levelled axis. */
-  readonly threshold: number
-  readonly countsAboveBaseline: number
-  readonly falseOnPerBin: number
-  readonly falseOffPerBin: number
-  /** Seconds; null where threshold errors make no cutoff worth naming (longer than 10^6 records). */
-  readonly artefactCutoffSeconds: { readonly on: number | null; readonly off: number | null }
-  readonly levels: { readonly offCps: number; readonly onCps: number }
-  readonly baseline: Pick<
-    Baseline,
-    'method' | 'supportedShare' | 'longestUnsupportedSeconds' | 'status' | 'message'
-  >
-  readonly onFraction: Estimate
-  readonly mixedBins: MixedBins
-  /** [off, on] */
-  readonly states: readonly [StateNumbers, StateNumbers]
-  readonly flags: readonly Flag[]
-}
+import type { BenchNumbers, StateNumbers } from './emitter-numbers.ts'
 
 /** Longer than this many record lengths, an artefact cutoff has no meaning for the record. */
 const MEANINGLESS_RECORDS = 1e6

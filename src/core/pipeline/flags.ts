@@ -1,13 +1,5 @@
 import { lawNamed } from '../laws/all-laws.ts'
-import type { BenchNumbers, StateNumbers } from './bench-numbers.ts'
-
-/** Something a careful reader would want to know about this emitter. Flags inform; they never decide. */
-export interface Flag {
-  /** Stable key, as in the result document. */
-  readonly key: string
-  /** What was seen, why it matters, what to do; with the value that triggered it. */
-  readonly sentence: string
-}
+import type { BenchNumbers, Flag, StateNumbers } from './emitter-numbers.ts'
 
 type Numbers = Omit<BenchNumbers, 'flags'>
 

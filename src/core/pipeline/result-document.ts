@@ -3,7 +3,7 @@ import type { LawName } from '../laws/law.ts'
 import type { Recipe } from '../recipe/recipe.ts'
 import { recipeHash } from '../recipe/recipe-hash.ts'
 import type { ThresholdProduct, TraceProduct } from './analysis-products.ts'
-import type { BenchNumbers, StateNumbers } from './bench-numbers.ts'
+import type { BenchNumbers, StateNumbers } from './emitter-numbers.ts'
 
 /** Estimate as it stands in the document: null where it does not exist. */
 type DocumentEstimate = Pick<Estimate, 'estimate' | 'low' | 'high'>

@@ -8,8 +8,16 @@ export const DEFAULT_RECIPE: Recipe = {
   threshold: { rule: 'crossing', sigmas: 4, handCounts: null },
   dwells: { gate: 'all' },
   fit: {
-    laws: ['power', 'power-cutoff-survival', 'power-cutoff-density', 'exponential', 'log-normal', 'stretched'],
-    shown: { on: 'best', off: 'best' },
+    laws: [
+      'power',
+      'power-cutoff-survival',
+      'power-cutoff-density',
+      'exponential',
+      'log-normal',
+      'stretched',
+    ],
+    // The field's usual numbers; weights and goodness of fit stand beside them.
+    shown: { on: 'power-cutoff-density', off: 'power-cutoff-density' },
     shortest: { rule: 'largest', subBinSafeBins: 3, handBins: { on: null, off: null } },
     confidence: 0.95,
   },

@@ -60,5 +60,8 @@ export function parseRecipe(value: unknown): RecipeParsed {
   const parsed = v.safeParse(RECIPE, value)
   if (parsed.success) return { ok: true, recipe: parsed.output }
   const [issue] = parsed.issues
-  return { ok: false, problem: `The recipe is not valid at “${v.getDotPath(issue) ?? 'top level'}”: ${issue.message}.` }
+  return {
+    ok: false,
+    problem: `The recipe is not valid at “${v.getDotPath(issue) ?? 'top level'}”: ${issue.message}.`,
+  }
 }

@@ -1,6 +1,6 @@
 import { plantEvent } from '../../core/baseline/plant-event.ts'
 import { sampleFromDwells } from '../../core/dwells/dwell-sample-of.ts'
-import { goodnessOfFit } from '../../core/fits/goodness-of-fit.ts'
+import { goodnessSlice, survivalDistance } from '../../core/fits/goodness-of-fit.ts'
 import { lawNamed } from '../../core/laws/all-laws.ts'
 import { seededRandom } from '../../core/numeric/seeded-random.ts'
 import type { RowFits } from '../../core/pipeline/analysis-products.ts'
@@ -12,7 +12,7 @@ import { emitterResult } from '../../core/pipeline/result-document.ts'
 import { previewSource } from '../../core/read/import-preview.ts'
 import { readSource } from '../../core/read/read-source.ts'
 import { edgeShare } from '../../core/states/edge-share.ts'
-import type { AnalysisRequest, AnalysisService, Outcome } from '../protocol/service.ts'
+import type { AnalysisRequest, AnalysisService, GoodnessTask, Outcome } from '../protocol/service.ts'
 import { blobSource } from './blob-source.ts'
 import { fileFingerprint } from './file-fingerprint.ts'
 import { recordShelf } from './record-shelf.ts'
@@ -116,29 +116,27 @@ export function analysisService(): AnalysisService {
         })
       }),
 
-    async goodness(job, { analysis, threshold, state, law }, onProgress) {
-      const outcome = await withCorridor(job, analysis, (corridor) => {
+    async goodnessTask(job, { analysis, threshold, state, law }) {
+      const outcome = await withCorridor(job, analysis, (corridor): GoodnessTask | null => {
         const { recipe } = analysis
         const prepared = corridor.prepared(recipe)
         const product = corridor.thresholds(recipe)
         const numbers = benchNumbers(prepared, product, recipe, threshold)
         const fit = numbers.states[state].fits.fits.find((one) => one.law === law)
-        if (fit === undefined) return null
+        if (fit === undefined || fit.coordinates.length === 0) return null
         const dwells = dwellsAt(prepared, product, recipe, numbers.threshold)
         const sample = sampleFromDwells(dwells, state, edgeShare(numbers.threshold, prepared.levelled, state))
-        return goodnessOfFit(lawNamed(fit.law), sample, fit, {
-          samples: recipe.goodness.samples,
-          seed: recipe.goodness.seed,
-          onProgress,
-          shouldStop: () => stopped.has(job),
-        })
+        const distance = survivalDistance(lawNamed(fit.law), fit.coordinates, sample, fit.shortestBins)
+        return { sample, fit, distance, seed: recipe.goodness.seed, samples: recipe.goodness.samples }
       })
       if (!outcome.ok) return outcome
-      if (stopped.delete(job)) return STOPPED
       return outcome.value === null
         ? { ok: false, sentence: `The law “${law}” was not fitted to these dwells.` }
         : { ok: true, value: outcome.value }
     },
+
+    goodnessSlice: ({ sample, fit, distance, seed }, from, to) =>
+      Promise.resolve(goodnessSlice(sample, fit, distance, seed, from, to)),
 
     dwellsCsv: (job, request, threshold) =>
       withCorridor(job, request, (corridor) =>
@@ -168,5 +166,20 @@ export function analysisService(): AnalysisService {
     stop(job) {
       stopped.add(job)
     },
+
+    holdLock: (name) =>
+      new Promise((resolve) => {
+        const { locks } = navigator
+        if (locks === undefined) {
+          resolve(false)
+          return
+        }
+        locks
+          .request(name, () => {
+            resolve(true)
+            return new Promise<void>(() => {})
+          })
+          .catch(() => resolve(false))
+      }),
   }
 }

@@ -1,30 +1,18 @@
-import type { Goodness } from '../../core/fits/goodness-of-fit.ts'
+import type { DwellSample } from '../../core/dwells/dwell-sample.ts'
+import type { Fit } from '../../core/fits/fit.ts'
+import type { GoodnessSlice } from '../../core/fits/goodness-of-fit.ts'
 import type { RowFits, ThresholdProduct, TraceProduct } from '../../core/pipeline/analysis-products.ts'
-import type { BenchNumbers } from '../../core/pipeline/bench-numbers.ts'
+import type { BenchNumbers } from '../../core/pipeline/emitter-numbers.ts'
 import type { EmitterResult } from '../../core/pipeline/result-document.ts'
 import type { ImportAnswer } from '../../core/read/import-answer.ts'
 import type { Preview } from '../../core/read/import-preview.ts'
 import type { Recipe } from '../../core/recipe/recipe.ts'
+import type { RecordOrigin } from '../../session/schema/record-origin.ts'
 
 /** Expected failures are data; a thrown error in the worker means a defect. */
 export type Outcome<T> =
   | { readonly ok: true; readonly value: T }
   | { readonly ok: false; readonly sentence: string; readonly stopped?: boolean }
-
-/** Where a record comes from, as the session stores it. */
-export type RecordOrigin =
-  | { readonly kind: 'demonstration'; readonly name: string }
-  | {
-      readonly kind: 'file'
-      readonly fileName: string
-      /** SHA-256 of the file's bytes, hex. */
-      readonly sha256: string
-      readonly sizeBytes: number
-      readonly answer: ImportAnswer
-      /** Index of the record inside the file as the answer reads it. */
-      readonly index: number
-      readonly column: number | null
-    }
 
 /** One record found in a file. */
 export interface OpenedRecord {
@@ -56,20 +44,42 @@ export type ProgressCallback = (fraction: number) => void
 /** What the worker offers. Long calls stop at the next step after `stop(job)`. */
 export interface AnalysisService {
   previewFile(file: Blob, name: string): Promise<Outcome<Preview>>
-  openFile(job: number, file: Blob, name: string, answer: ImportAnswer, onProgress: ProgressCallback): Promise<Outcome<OpenedFile>>
+  openFile(
+    job: number,
+    file: Blob,
+    name: string,
+    answer: ImportAnswer,
+    onProgress: ProgressCallback,
+  ): Promise<Outcome<OpenedFile>>
   /** Bin, baseline, pyramid, histogram. */
   trace(job: number, request: AnalysisRequest): Promise<Outcome<TraceProduct>>
   /** All thresholds. Uses the same memo as `trace`. */
   thresholds(job: number, request: AnalysisRequest): Promise<Outcome<ThresholdProduct>>
   /** Fits of the given rows; without intervals for all laws when `intervals` is false. */
-  rowFits(job: number, request: AnalysisRequest, rows: readonly number[], intervals: boolean): Promise<Outcome<readonly RowFits[]>>
+  rowFits(
+    job: number,
+    request: AnalysisRequest,
+    rows: readonly number[],
+    intervals: boolean,
+  ): Promise<Outcome<readonly RowFits[]>>
   /** The settled numbers at one threshold from the exact list of dwells. */
   settle(job: number, request: AnalysisRequest, threshold: number): Promise<Outcome<BenchNumbers>>
-  plantEvent(job: number, request: AnalysisRequest, threshold: number, atSeconds: number | null, durationSeconds: number, seed: string): Promise<Outcome<PlantReport>>
-  goodness(job: number, request: GoodnessRequest, onProgress: ProgressCallback): Promise<Outcome<Goodness>>
+  plantEvent(
+    job: number,
+    request: AnalysisRequest,
+    threshold: number,
+    atSeconds: number | null,
+    durationSeconds: number,
+    seed: string,
+  ): Promise<Outcome<PlantReport>>
+  /** What a parametric bootstrap needs; slices of it run in any worker. */
+  goodnessTask(job: number, request: GoodnessRequest): Promise<Outcome<GoodnessTask>>
+  goodnessSlice(task: GoodnessTask, from: number, to: number): Promise<GoodnessSlice>
   dwellsCsv(job: number, request: AnalysisRequest, threshold: number): Promise<Outcome<string>>
   resultDocument(job: number, request: AnalysisRequest, threshold: number): Promise<Outcome<EmitterResult>>
   stop(job: number): void
+  /** Takes and keeps a lock, so that the page learns of this worker's death by getting it. */
+  holdLock(name: string): Promise<boolean>
 }
 
 export interface PlantReport {
@@ -85,4 +95,14 @@ export interface GoodnessRequest {
   readonly threshold: number
   readonly state: 0 | 1
   readonly law: string
+}
+
+/** The data of one goodness-of-fit test. */
+export interface GoodnessTask {
+  readonly sample: DwellSample
+  readonly fit: Fit
+  /** Distance of the observed dwells from the fit. */
+  readonly distance: number
+  readonly seed: number
+  readonly samples: number
 }

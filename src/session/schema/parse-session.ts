@@ -1,0 +1,80 @@
+import * as v from 'valibot'
+import { parseRecipe } from '../../core/recipe/recipe-schema.ts'
+import { resolveRecipe } from '../../core/recipe/resolve-recipe.ts'
+import { migrate } from './migrations.ts'
+import type { Session } from './session.ts'
+import { SESSION_VERSION } from './session.ts'
+
+const text = v.pipe(v.string(), v.maxLength(4096))
+const plainObject = v.record(text, v.unknown())
+
+const ORIGIN = v.variant('kind', [
+  v.strictObject({ kind: v.literal('demonstration'), name: text }),
+  v.strictObject({
+    kind: v.literal('file'),
+    fileName: text,
+    sha256: v.pipe(v.string(), v.regex(/^[0-9a-f]{64}$/, 'expected 64 hexadecimal digits')),
+    sizeBytes: v.pipe(v.number(), v.integer(), v.minValue(0)),
+    answer: plainObject,
+    index: v.pipe(v.number(), v.integer(), v.minValue(0)),
+    column: v.nullable(v.pipe(v.number(), v.integer(), v.minValue(0))),
+  }),
+])
+
+const SESSION = v.strictObject({
+  version: v.literal(SESSION_VERSION),
+  id: text,
+  name: text,
+  changedAt: text,
+  recipe: v.unknown(),
+  emitters: v.pipe(
+    v.array(v.strictObject({ id: text, name: text, origin: ORIGIN, difference: plainObject })),
+    v.maxLength(100_000),
+  ),
+  currentEmitterId: v.nullable(text),
+  view: v.strictObject({
+    windows: v.record(text, v.tuple([v.pipe(v.number(), v.finite()), v.pipe(v.number(), v.finite())])),
+    dwellPlot: v.picklist(['density', 'survival', 'hazard']),
+  }),
+  importAnswers: v.record(text, plainObject),
+})
+
+export type SessionParsed =
+  | { readonly ok: true; readonly session: Session; readonly migratedFrom: number | null }
+  | { readonly ok: false; readonly problem: string }
+
+/**
+ * A session from storage or from a file: migrated step by step to this version, then checked whole. Nothing is
+ * repaired: what does not fit is refused with the place and the reason, and the caller's data stay as they are.
+ */
+export function parseSession(value: unknown): SessionParsed {
+  const migrated = migrate(value)
+  if (!migrated.ok) return migrated
+  const parsed = v.safeParse(SESSION, migrated.value)
+  if (!parsed.success) {
+    const [issue] = parsed.issues
+    return {
+      ok: false,
+      problem: `The session is not valid at “${v.getDotPath(issue) ?? 'top level'}”: ${issue.message}.`,
+    }
+  }
+  const recipe = parseRecipe(parsed.output.recipe)
+  if (!recipe.ok) return recipe
+  for (const emitter of parsed.output.emitters) {
+    const resolved = parseRecipe(resolveRecipe(recipe.recipe, emitter.difference))
+    if (!resolved.ok) return { ok: false, problem: `Emitter “${emitter.name}”: ${resolved.problem}` }
+  }
+  const ids = new Set(parsed.output.emitters.map(({ id }) => id))
+  if (ids.size !== parsed.output.emitters.length)
+    return { ok: false, problem: 'Two emitters of the session share one id.' }
+  const current = parsed.output.currentEmitterId
+  if (current !== null && !ids.has(current)) {
+    return { ok: false, problem: `The session points at an emitter “${current}” that it does not hold.` }
+  }
+  return {
+    ok: true,
+    // The answers of readers are checked by the readers when the file is read again.
+    session: { ...parsed.output, recipe: recipe.recipe } as Session,
+    migratedFrom: migrated.from === SESSION_VERSION ? null : migrated.from,
+  }
+}
