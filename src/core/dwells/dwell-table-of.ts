@@ -1,7 +1,7 @@
 import { GATE_CLASSES } from '../photons/gate.ts'
 import { columnOf, durationGrid } from '../states/duration-grid.ts'
 import type { LevelledTrace } from '../states/levels.ts'
-import { spuriousChance, spuriousPerColumn, type ErrorRates } from '../states/spurious-runs.ts'
+import { spuriousAndSplit, spuriousChance, wrongAndMissed, type ErrorRates } from '../states/spurious-runs.ts'
 import type { StateSequence } from '../states/state-sequence.ts'
 import type { TableGroup } from '../states/threshold-table.ts'
 import type { DwellTable } from './dwell-table.ts'
@@ -115,8 +115,9 @@ function spuriousProbabilities(
     if (complete) tally.complete[column]++
   }
   const chances = ([0, 1] as const).map((of) => {
-    const wrong = of === 1 ? errors.falseOnPerBin : errors.falseOffPerBin
-    return spuriousChance(spuriousPerColumn(dwells[1 - of], wrong, grid), dwells[of].complete, grid)
+    const [wrong, missed] = wrongAndMissed(errors, of)
+    const { spurious } = spuriousAndSplit(dwells[of], dwells[1 - of], wrong, missed, grid)
+    return spuriousChance(spurious, dwells[of].complete, grid)
   })
   return Float32Array.from(state, (of, row) => chances[of][columnOf(grid, wholeBins[row])])
 }

@@ -37,16 +37,47 @@ export interface ExpectedSpurious {
   readonly observed: Float64Array
 }
 
+/** Dwells of one state: all of them, and the complete ones among them. */
+export interface StateColumns extends ColumnDwells {
+  readonly complete: Float64Array
+}
+
 /**
- * Spurious and split dwells to be expected in one row of the threshold table, per column, from the tallies alone: cost
- * grows with columns only, cheap enough for every step of a drag.
+ * Spurious and split dwells of one state to be expected per column, from the observed dwells of both states.
  *
  * The formulas want the true dwells; the observed ones stand in for them after two corrections. The expected spurious dwells are taken
  * away (never more than were seen), and as each of them has cut a dwell of the other state in two, that state's
  * number of dwells is lowered by as many, its bins kept. This is right to first order in (error rate x dwell length); where
- * dwells are mostly noise (threshold inside a level) the numbers say no more than that. Dwells with an unseen start are taken at their
- * mean length. In a gate class, the numbers of the whole record are scaled by the class's share of the bins in which
- * such dwells can arise.
+ * dwells are mostly noise (threshold inside a level) the numbers say no more than that.
+ *
+ * @param wrong chance that a bin of the other state is read as this one
+ * @param missed chance that a bin of this state is read as the other
+ */
+export function spuriousAndSplit(
+  own: StateColumns,
+  other: StateColumns,
+  wrong: number,
+  missed: number,
+  grid: DurationGrid,
+): { readonly spurious: Float64Array; readonly split: Float64Array } {
+  const removedOwn = lesser(spuriousPerColumn(other, wrong, grid), own.complete)
+  const removedOther = lesser(spuriousPerColumn(own, missed, grid), other.complete)
+  const hosts = denoised(other, removedOther, removedOwn, grid)
+  const whole = denoised(own, removedOwn, removedOther, grid)
+  return {
+    spurious: spuriousPerColumn(hosts, wrong, grid),
+    split: overColumns(grid, hostsLonger(whole, grid), (m, longer, bins) => {
+      const interior = Math.max(0, bins - (m + 1) * longer)
+      return (1 - missed) ** m * (2 * missed * longer + missed * missed * interior)
+    }),
+  }
+}
+
+/**
+ * Spurious and split dwells to be expected in one row of the threshold table, from the tallies alone: cost grows with
+ * columns only, cheap enough for every step of a drag. See `spuriousAndSplit`. Dwells with an unseen start are taken at
+ * their mean length. In a gate class, the numbers of the whole record are scaled by the class's share of the bins in
+ * which such dwells can arise.
  *
  * @param group index into table.groups
  * @param state 0 off, 1 on: the dwells in question
@@ -60,34 +91,35 @@ export function expectedSpurious(
 ): ExpectedSpurious {
   const other = state === 0 ? 1 : 0
   const { grid, blocks } = table
-  const columns = grid.edges.length - 1
-  const rowCells = (cells: Float64Array): Float64Array => cells.subarray(row * columns, (row + 1) * columns)
-  const [wrong, missed] =
-    state === 1
-      ? [errors.falseOnPerBin, errors.falseOffPerBin]
-      : [errors.falseOffPerBin, errors.falseOnPerBin]
-  const own = dwellsOfRow(blocks[0][state], grid, row)
-  const hosts = dwellsOfRow(blocks[0][other], grid, row)
-  const removedOwn = lesser(spuriousPerColumn(hosts, wrong, grid), rowCells(blocks[0][state].completeCount))
-  const removedHosts = lesser(spuriousPerColumn(own, missed, grid), rowCells(blocks[0][other].completeCount))
-  const spurious = spuriousPerColumn(denoised(hosts, removedHosts, removedOwn, grid), wrong, grid)
-  const split = overColumns(
+  const [wrong, missed] = wrongAndMissed(errors, state)
+  const { spurious, split } = spuriousAndSplit(
+    dwellsOfRow(blocks[0][state], grid, row),
+    dwellsOfRow(blocks[0][other], grid, row),
+    wrong,
+    missed,
     grid,
-    hostsLonger(denoised(own, removedOwn, removedHosts, grid), grid),
-    (m, longer, bins) =>
-      longer > 0
-        ? (1 - missed) ** m * (2 * missed * longer + missed * missed * Math.max(0, bins - (m + 1) * longer))
-        : 0,
   )
   if (group !== 0) {
     scale(spurious, share(blocks[group][other], blocks[0][other], row))
     scale(split, share(blocks[group][state], blocks[0][state], row))
   }
-  return { spurious, split, observed: rowCells(blocks[group][state].completeCount).slice() }
+  return { spurious, split, observed: rowOf(blocks[group][state].completeCount, grid, row).slice() }
+}
+
+/** The chances that make spurious dwells of a state and that split its dwells. */
+export function wrongAndMissed(errors: ErrorRates, state: 0 | 1): readonly [number, number] {
+  return state === 1
+    ? [errors.falseOnPerBin, errors.falseOffPerBin]
+    : [errors.falseOffPerBin, errors.falseOnPerBin]
+}
+
+function rowOf(cells: Float64Array, grid: DurationGrid, row: number): Float64Array {
+  const columns = grid.edges.length - 1
+  return cells.subarray(row * columns, (row + 1) * columns)
 }
 
 /** Expected false runs of each duration inside the given dwells of the other state, summed over each column. */
-export function spuriousPerColumn(hosts: ColumnDwells, wrong: number, grid: DurationGrid): Float64Array {
+function spuriousPerColumn(hosts: ColumnDwells, wrong: number, grid: DurationGrid): Float64Array {
   return overColumns(
     grid,
     hostsLonger(hosts, grid),
@@ -148,7 +180,7 @@ export function spuriousSafeBins(
 }
 
 /** All dwells of one state in a row of the table: complete, censored and, at their mean length, those of unseen start. */
-function dwellsOfRow(block: ThresholdBlock, grid: DurationGrid, row: number): ColumnDwells {
+function dwellsOfRow(block: ThresholdBlock, grid: DurationGrid, row: number): StateColumns {
   const columns = grid.edges.length - 1
   const count = new Float64Array(columns)
   const bins = new Float64Array(columns)
@@ -167,7 +199,7 @@ function dwellsOfRow(block: ThresholdBlock, grid: DurationGrid, row: number): Co
     count[c] += unseen
     bins[c] += total
   }
-  return { count, bins }
+  return { count, bins, complete: rowOf(block.completeCount, grid, row) }
 }
 
 function lesser(a: Float64Array, b: Float64Array): Float64Array {
