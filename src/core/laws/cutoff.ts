@@ -2,10 +2,22 @@ import type { ParameterSpec } from './law.ts'
 import { weightedMean } from './weighted-mean.ts'
 
 /** The reported cutoff time of both cutoff laws. */
-export const TAU: ParameterSpec = { name: 'tauSeconds', symbol: 'τ', unit: 's', low: 0, high: Number.POSITIVE_INFINITY }
+export const TAU: ParameterSpec = {
+  name: 'tauSeconds',
+  symbol: 'τ',
+  unit: 's',
+  low: 0,
+  high: Number.POSITIVE_INFINITY,
+}
 
 /** The free coordinate: kappa = 1/tau, so that no cutoff is the point 0. */
-export const KAPPA: ParameterSpec = { name: 'kappa', symbol: 'κ', unit: '1/s', low: 0, high: Number.POSITIVE_INFINITY }
+export const KAPPA: ParameterSpec = {
+  name: 'kappa',
+  symbol: 'κ',
+  unit: '1/s',
+  low: 0,
+  high: Number.POSITIVE_INFINITY,
+}
 
 /** tau from kappa; no cutoff is Infinity. */
 export function tauOf(kappa: number): number {

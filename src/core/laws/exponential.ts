@@ -3,11 +3,11 @@ import { TAU, tauOf } from './cutoff.ts'
 import type { Law } from './law.ts'
 import { weightedMean } from './weighted-mean.ts'
 
-/** Exponential law: S(t) = e^-(t-s)/tau. One rate, no memory. */
+/** Exponential law: S(t) = e^(-(t-s)/tau). One rate, no memory. */
 export const exponential: Law = {
   name: 'exponential',
   label: 'exponential',
-  formula: 'P(t) ∝ e^−t/τ',
+  formula: 'P(t) ∝ e^(−t/τ)',
   source: 'Cox and Lewis, The Statistical Analysis of Series of Events, Methuen (1966)',
   parameters: [TAU],
   coordinates: [{ name: 'rate', symbol: 'k', unit: '1/s', low: 0, high: Number.POSITIVE_INFINITY }],

@@ -1,16 +1,19 @@
-import { lnNormalUpperTail, normalUpperQuantile } from '../numeric/normal.ts'
+import { lnMills } from '../numeric/normal.ts'
+import { normalExcessVariate } from '../numeric/variates.ts'
 import type { Law } from './law.ts'
 import { meanLog, spreadLog } from './weighted-mean.ts'
 
-const HALF_LN_TWO_PI = 0.91893853320467274178
-
 const SIGMA = { name: 'sigma', symbol: 'σ', unit: '', low: 0.05, high: 30 } as const
 
-/** Log-normal law cut at the shortest duration: ln t normal with mean ln(median) and standard deviation sigma. */
+/**
+ * Log-normal law cut at the shortest duration: ln t normal with mean ln(median) and standard deviation sigma, given
+ * t >= s. With the median far below s it imitates a power law, and the best fit can run off to a median of 0; the
+ * density is written relative to the shortest duration so that nothing cancels on the way.
+ */
 export const logNormal: Law = {
   name: 'log-normal',
   label: 'log-normal',
-  formula: 'P(t) ∝ t^−1 exp[−(ln t/t_m)²/2σ²]',
+  formula: 'P(t) ∝ t^−1 exp[−(ln(t/t_m))²/(2σ²)]',
   source: 'Crow and Shimizu, Lognormal Distributions, Dekker (1988)',
   parameters: [
     { name: 'medianSeconds', symbol: 't_m', unit: 's', low: 0, high: Number.POSITIVE_INFINITY },
@@ -21,24 +24,29 @@ export const logNormal: Law = {
   coordinatesOf: ([median, sigma]) => [Math.log(median), sigma],
 
   at([mean, sigma], shortest) {
-    const lnTail = lnNormalUpperTail((Math.log(shortest) - mean) / sigma)
-    const lnFront = -HALF_LN_TWO_PI - Math.log(sigma) - lnTail
+    const lnShortest = Math.log(shortest)
+    const z0 = (lnShortest - mean) / sigma
+    const lnMills0 = lnMills(z0)
+    const lnFront = -Math.log(sigma) - lnMills0
     return {
       logDensity(t) {
-        if (t < shortest) return Number.NEGATIVE_INFINITY
+        if (t < shortest || t === Number.POSITIVE_INFINITY) return Number.NEGATIVE_INFINITY
         const lnT = Math.log(t)
-        const z = (lnT - mean) / sigma
-        return lnFront - lnT - 0.5 * z * z
+        const d = (lnT - lnShortest) / sigma
+        return lnFront - lnT - d * (z0 + 0.5 * d)
       },
-      logSurvival: (t) => (t <= shortest ? 0 : lnNormalUpperTail((Math.log(t) - mean) / sigma) - lnTail),
+      logSurvival(t) {
+        if (t <= shortest) return 0
+        if (t === Number.POSITIVE_INFINITY) return Number.NEGATIVE_INFINITY
+        const d = (Math.log(t) - lnShortest) / sigma
+        return lnMills(z0 + d) - lnMills0 - d * (z0 + 0.5 * d)
+      },
     }
   },
 
   sample(random, [mean, sigma], shortest) {
-    // Inverse of the upper tail by its logarithm: far out the tail itself would underflow.
-    const lnTail = lnNormalUpperTail((Math.log(shortest) - mean) / sigma)
-    const z = normalUpperQuantile(Math.log(random.uniform()) + lnTail)
-    return Math.max(shortest, Math.exp(mean + sigma * z))
+    const z0 = (Math.log(shortest) - mean) / sigma
+    return shortest * Math.exp(sigma * normalExcessVariate(random, z0))
   },
 
   start(seconds, weights) {

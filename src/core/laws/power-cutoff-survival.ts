@@ -7,26 +7,32 @@ const ALPHA = { name: 'alpha', symbol: 'α', unit: '', low: 1, high: STEEPEST_AL
 
 /**
  * Power law with a competing constant rate: S(t) = (t/s)^-(alpha-1) e^-kappa(t-s), hazard (alpha-1)/t + kappa.
- * The form that threshold errors make.
+ * The form that threshold errors make. kappa = 0 is the power law, alpha = 1 the exponential law.
  */
 export const powerCutoffSurvival: Law = {
   name: 'power-cutoff-survival',
   label: 'power law, cutoff in survival form',
-  formula: 'S(t) ∝ t^−(α−1) e^−t/τ',
-  source: 'competing constant hazard; compare Cox, J. R. Stat. Soc. B 34, 187 (1972)',
+  formula: 'S(t) ∝ t^−(α−1) e^(−t/τ)',
+  source: 'hazards of competing causes add: Cox, J. R. Stat. Soc. B 34, 187 (1972)',
   parameters: [ALPHA, TAU],
   coordinates: [ALPHA, KAPPA],
   parametersOf: ([alpha, kappa]) => [alpha, tauOf(kappa)],
   coordinatesOf: ([alpha, tau]) => [alpha, 1 / tau],
 
   at([alpha, kappa], shortest) {
-    const a = alpha - 1
+    const a = Math.max(0, alpha - 1)
+    const rate = Math.max(0, kappa)
     const lnShortest = Math.log(shortest)
-    const logSurvival = (t: number): number =>
-      t <= shortest ? 0 : -a * (Math.log(t) - lnShortest) - kappa * (t - shortest)
     return {
-      logDensity: (t) => (t < shortest ? Number.NEGATIVE_INFINITY : Math.log(a / t + kappa) + logSurvival(t)),
-      logSurvival,
+      logDensity(t) {
+        if (t < shortest) return Number.NEGATIVE_INFINITY
+        return Math.log(a / t + rate) - a * (Math.log(t) - lnShortest) - rate * (t - shortest)
+      },
+      logSurvival(t) {
+        if (t <= shortest) return 0
+        const ofPower = a === 0 ? 0 : -a * (Math.log(t) - lnShortest)
+        return rate === 0 ? ofPower : ofPower - rate * (t - shortest)
+      },
     }
   },
 

@@ -6,7 +6,7 @@ export const STEEPEST_ALPHA = 8
 
 const ALPHA = { name: 'alpha', symbol: 'α', unit: '', low: 1, high: STEEPEST_ALPHA } as const
 
-/** Power law: f(t) = (alpha - 1)/s (t/s)^-alpha, t >= s, alpha > 1. */
+/** Power law: f(t) = (alpha - 1)/s (t/s)^-alpha, t >= s, alpha > 1; at alpha <= 1 no duration has a chance. */
 export const power: Law = {
   name: 'power',
   label: 'power law',
@@ -18,12 +18,14 @@ export const power: Law = {
   coordinatesOf: (parameters) => [...parameters],
 
   at([alpha], shortest) {
-    const a = alpha - 1
+    const a = Math.max(0, alpha - 1)
     const lnShortest = Math.log(shortest)
     const lnFront = Math.log(a) - lnShortest
     return {
-      logDensity: (t) => (t < shortest ? Number.NEGATIVE_INFINITY : lnFront - alpha * (Math.log(t) - lnShortest)),
-      logSurvival: (t) => (t <= shortest ? 0 : -a * (Math.log(t) - lnShortest)),
+      logDensity: (t) =>
+        t < shortest ? Number.NEGATIVE_INFINITY : lnFront - alpha * (Math.log(t) - lnShortest),
+      // The branch for Infinity only matters at alpha = 1, where 0 times infinity would be no number.
+      logSurvival: (t) => (t <= shortest || a === 0 ? 0 : -a * (Math.log(t) - lnShortest)),
     }
   },
 

@@ -13,7 +13,12 @@ interface MinimiseOptions {
 const GOLDEN = 0.3819660112501051
 
 /** Minimum of f on [low, high]: golden section with parabolic steps (Brent 1973, Algorithms for Minimization). */
-export function minimise1d(f: (x: number) => number, low: number, high: number, options: MinimiseOptions = {}): Minimum1d {
+export function minimise1d(
+  f: (x: number) => number,
+  low: number,
+  high: number,
+  options: MinimiseOptions = {},
+): Minimum1d {
   const tolerance = options.tolerance ?? 1e-8
   const most = options.mostEvaluations ?? 200
   let a = low
@@ -27,7 +32,8 @@ export function minimise1d(f: (x: number) => number, low: number, high: number, 
   while (evaluations < most) {
     const middle = 0.5 * (a + b)
     const tiny = 1e-10 * Math.abs(x) + tolerance / 3
-    if (Math.abs(x - middle) <= 2 * tiny - 0.5 * (b - a)) return { x, value: fx, evaluations, converged: true }
+    if (Math.abs(x - middle) <= 2 * tiny - 0.5 * (b - a))
+      return { x, value: fx, evaluations, converged: true }
     let golden = true
     if (Math.abs(before) > tiny) {
       const r = (x - w) * (fx - fv)
@@ -115,7 +121,8 @@ export function minimiseNelderMead(
       const inner = along(reflected.value < worst.value ? -0.5 : 0.5)
       if (inner.value < Math.min(reflected.value, worst.value)) simplex[n] = inner
       else {
-        for (let i = 1; i <= n; i++) simplex[i] = at(simplex[i].x.map((v, j) => best.x[j] + 0.5 * (v - best.x[j])))
+        for (let i = 1; i <= n; i++)
+          simplex[i] = at(simplex[i].x.map((v, j) => best.x[j] + 0.5 * (v - best.x[j])))
       }
     }
     order()

@@ -14,7 +14,12 @@ interface RootOptions {
  * A root of f between low and high, where f changes sign (Chandrupatla, Adv. Eng. Softw. 28, 145 (1997)).
  * `converged` is false when there is no change of sign or a value is not a number.
  */
-export function findRoot(f: (x: number) => number, low: number, high: number, options: RootOptions = {}): RootFound {
+export function findRoot(
+  f: (x: number) => number,
+  low: number,
+  high: number,
+  options: RootOptions = {},
+): RootFound {
   const most = options.mostEvaluations ?? 100
   let b = low
   let a = high

@@ -4,7 +4,9 @@ const TWO_TO_MINUS_53 = 2 ** -53
 
 /**
  * A seeded uniform generator: xoshiro128** of Blackman and Vigna (ACM Trans. Math. Softw. 47, 36 (2021)); the
- * 128-bit state is filled from the seed's text by a mixing hash. Equal seeds give equal numbers on every machine.
+ * 128-bit state is filled from the seed's text by a mixing hash of 32 bits, so two of 10^4 different seeds share their
+ * stream with a chance of one in a hundred, and changing the hash would change every seeded record. Equal seeds give
+ * equal numbers on every machine; a number and its text are the same seed.
  */
 export function seededRandom(seed: number | string): RandomSource {
   const text = String(seed)

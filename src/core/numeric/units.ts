@@ -9,7 +9,11 @@ export function roundTo(value: number, uncertainty: number | null, digits = 3): 
       : magnitude - digits + 1
   const decimals = Math.max(0, Math.min(12, -place))
   if (magnitude >= 6 || magnitude < -5) return minus(value.toExponential(Math.max(1, digits - 1)))
-  return minus(place > 0 ? String(Number(value.toPrecision(Math.max(1, magnitude - place + 1)))) : value.toFixed(decimals))
+  return minus(
+    place > 0
+      ? String(Number(value.toPrecision(Math.max(1, magnitude - place + 1))))
+      : value.toFixed(decimals),
+  )
 }
 
 function minus(text: string): string {
@@ -42,8 +46,10 @@ export function formatEstimate(value: {
   const { estimate, low, high, unit } = value
   const suffix = unit === '' ? '' : ` ${unit}`
   if (estimate === null && low === null && high === null) return { text: 'not available', interval: '' }
-  if (estimate === null && low !== null) return { text: `> ${roundTo(low, null, 2)}${suffix}`, interval: 'bound' }
-  if (estimate === null) return { text: `< ${roundTo(high ?? Number.NaN, null, 2)}${suffix}`, interval: 'bound' }
+  if (estimate === null && low !== null)
+    return { text: `> ${roundTo(low, null, 2)}${suffix}`, interval: 'bound' }
+  if (estimate === null)
+    return { text: `< ${roundTo(high ?? Number.NaN, null, 2)}${suffix}`, interval: 'bound' }
   const width = low !== null && high !== null ? (high - low) / 4 : null
   const one = (x: number | null): string => (x === null ? '∞' : roundTo(x, width))
   return {

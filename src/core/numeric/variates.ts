@@ -16,6 +16,24 @@ export function normalVariate(random: RandomSource, mean = 0, sd = 1): number {
   }
 }
 
+/**
+ * Z - z0 for a standard normal Z given Z >= z0: rejection from the normal law below z0 = 1, from the exponential law
+ * that touches the tail above (Marsaglia,
+ * Technometrics 6, 101 (1964)).
+ */
+export function normalExcessVariate(random: RandomSource, z0: number): number {
+  if (z0 < 1) {
+    for (;;) {
+      const excess = normalVariate(random) - z0
+      if (excess >= 0) return excess
+    }
+  }
+  for (;;) {
+    const excess = exponentialVariate(random, 1 / z0)
+    if (exponentialVariate(random, 1) > 0.5 * excess * excess) return excess
+  }
+}
+
 /** Gamma variate of given shape and scale 1 (Marsaglia and Tsang, ACM Trans. Math. Softw. 26, 363 (2000)). */
 export function gammaVariate(random: RandomSource, shape: number): number {
   if (shape < 1) return gammaVariate(random, shape + 1) * random.uniform() ** (1 / shape)
