@@ -65,9 +65,10 @@ export interface NeighbourPoint {
 }
 
 /**
- * Density at every distinct duration, weighted by the distance to its neighbours: P(t_i) = (N_i / N) 2 / (t_(i+1) - t_(i-1)),
- * one-sided at the ends (Kuno, Fromm, Hamann, Gallagher & Nesbitt, J. Chem. Phys. 115, 1028 (2001)). A picture of a
- * wide tail, not for fitting: the slope of a regression on it is biased low. One duration only: one bin wide.
+ * Density at every distinct duration, weighted by the distance to its neighbours: P(t_i) = (N_i / N) 2 /
+ * (t_(i+1) - t_(i-1)), one-sided at the ends (Kuno, Fromm, Hamann, Gallagher & Nesbitt, J. Chem. Phys. 115,
+ * 1028 (2001)). A picture of a wide tail, not for fitting: the slope of a regression on it is biased low. One
+ * duration only: one bin wide.
  *
  * @param sample from the list of dwells (nodes at durations that occur)
  */

@@ -1,9 +1,9 @@
 import { durationGrid } from '../states/duration-grid.ts'
 
 /**
- * Edges of bins in duration at whole numbers of trace bins, about `perDecade` to a decade: a choice from the edges of
- * the duration grid, so that tallies by column fill them exactly. Starts at 1; the last edge lies above `longestBins`.
- * Bin j holds durations edges[j] <= m < edges[j + 1].
+ * Edges of bins in duration at whole numbers of trace bins, about `perDecade` to a decade: a choice from the
+ * edges of the duration grid, so that tallies by column fill them exactly. Starts at 1; the last edge lies
+ * above `longestBins`. Bin j holds durations edges[j] <= m < edges[j + 1].
  */
 export function durationEdges(longestBins: number, perDecade: number): number[] {
   const ratio = 10 ** (1 / perDecade)

@@ -4,9 +4,9 @@ import type { DwellSample } from './dwell-sample.ts'
 import type { DwellTable } from './dwell-table.ts'
 
 /**
- * The dwells of one state for a fit, exactly: one node per distinct duration, ascending. Dwells of unseen start are left
- * out. When the table is cut at gate edges, only pieces inside windows of its class count, at the age of the whole
- * dwell at their end, with an entry at the age at which they were taken up.
+ * The dwells of one state for a fit, exactly: one node per distinct duration, ascending. Dwells of unseen start
+ * are left out. When the table is cut at gate edges, only pieces inside windows of its class count, at the age
+ * of the whole dwell at their end, with an entry at the age at which they were taken up.
  *
  * Fits choose complete and censored nodes at or above the shortest fitted dwell; an entry below it has no effect.
  */
@@ -53,14 +53,16 @@ function distinct(durations: readonly number[]): readonly [Float64Array, Float64
 }
 
 /**
- * The dwells of one state for a fit, from one row of the threshold table: no list of dwells is needed. A column of one
- * duration (all up to 64 bins) gives one node, exactly; a wider column gives two nodes with the number, mean and
- * variance of its dwells, inside the column: at the mean -/+ one standard deviation with equal weights when both lie in
- * it, else moved towards the near edge with weights to match. Sums of smooth functions of duration then agree with the full list to about the
- * third power of the column's relative width (1/16), some 1e-5.
+ * The dwells of one state for a fit, from one row of the threshold table: no list of dwells is needed. A column
+ * of one duration (all up to 64 bins) gives one node, exactly; a wider column gives two nodes with the number,
+ * mean and variance of its dwells, inside the column: at the mean -/+ one standard deviation with equal weights
+ * when both lie in it, else moved towards the near edge with weights to match. Sums of smooth functions of
+ * duration then agree with the full list to about the third power of the column's relative width (1/16), some
+ * 1e-5.
  *
- * Because nodes stay inside their columns, choosing nodes at or above a shortest fitted dwell chooses the same dwells
- * as the full list whenever that dwell is 64 bins or fewer, or begins a column; inside a wide column it is approximate.
+ * Because nodes stay inside their columns, choosing nodes at or above a shortest fitted dwell chooses the same
+ * dwells as the full list whenever that dwell is 64 bins or fewer, or begins a column; inside a wide column it
+ * is approximate.
  *
  * @param group index into table.groups
  */

@@ -13,17 +13,19 @@ const END_UNSEEN = 2
 const BOTH_UNSEEN = 3
 
 /**
- * Dwells of a record, one row each, in time order; gap runs have no row. Dwells that touch an end of the record or a gap
- * are censored there.
+ * Dwells of a record, one row each, in time order; gap runs have no row. Dwells that touch an end of the record
+ * or a gap are censored there.
  *
  * With `gate` a class that occurs in the record, every dwell is cut at every change of gate code, guard bins
- * included, so that each usable bin still belongs to one row. A piece that ends at an edge is `end-unseen`, and the next piece carries
- * the age at which it is taken up (delayed entry); the last piece is complete when the dwell's end was seen. Pieces of a dwell of
- * unseen start stay `start-unseen`, with their age counted from the first bin seen. Without such a class the dwells stay whole.
+ * included, so that each usable bin still belongs to one row. A piece that ends at an edge is `end-unseen`, and
+ * the next piece carries the age at which it is taken up (delayed entry); the last piece is complete when the
+ * dwell's end was seen. Pieces of a dwell of unseen start stay `start-unseen`, with their age counted from the
+ * first bin seen. Without such a class the dwells stay whole.
  *
  * @param gateCodes class code of every bin; null without a gate
- * @param errors chances of a wrong state per bin at this threshold, for the spurious probability of each dwell: expected spurious
- *   over observed dwells of about the same length, see `spuriousChance`; a piece has that of its whole dwell
+ * @param errors chances of a wrong state per bin at this threshold, for the spurious probability of each dwell:
+ *   expected spurious over observed dwells of about the same length, see `spuriousChance`; a piece has that of
+ *   its whole dwell
  */
 export function dwellTableOf(
   sequence: StateSequence,

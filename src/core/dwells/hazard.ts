@@ -16,13 +16,14 @@ export interface HazardPoint {
 }
 
 /**
- * t x h(t) on logarithmic stretches of age: ends over time at risk, with exact Poisson limits of the number of ends (Garwood 1936).
- * A power law is flat at alpha - 1, a cutoff rises, a stretched exponential is a straight line of slope
- * beta; points are independent, unlike those of a density. Censored time counts in full, delayed entry is honoured.
+ * t x h(t) on logarithmic stretches of age: ends over time at risk, with exact Poisson limits of the number of
+ * ends (Garwood 1936). A power law is flat at alpha - 1, a cutoff rises, a stretched exponential is a straight
+ * line of slope beta; points are independent, unlike those of a density. Censored time counts in full, delayed
+ * entry is honoured.
  *
- * Time at risk is counted as in the survival curve: a dwell of m bins ended at age m; one cut at m, or taken up at
- * m, was at risk, or taken up, up to m + 1/2, because its next bin could be m + 1 at the earliest. Stretches without time
- * at risk are left out.
+ * Time at risk is counted as in the survival curve: a dwell of m bins ended at age m; one cut at m, or taken up
+ * at m, was at risk, or taken up, up to m + 1/2, because its next bin could be m + 1 at the earliest. Stretches
+ * without time at risk are left out.
  *
  * @param perDecade stretches per decade of age
  * @param confidence of the limits, 0..1

@@ -14,10 +14,10 @@ export interface SurvivalCurve {
 }
 
 /**
- * Product-limit survival of dwell times (Kaplan & Meier, J. Am. Stat. Assoc. 53, 457 (1958)) with right censoring and
- * delayed entry; variance by Greenwood (1926), limits on the log(-log) scale, S^exp(-/+ z s / ln S). At risk at m are
- * dwells whose complete or censored duration is at least m and whose entry age is below m. Under delayed entry a small risk set at
- * short durations can take the curve to 0 by itself: look at `atRisk`.
+ * Product-limit survival of dwell times (Kaplan & Meier, J. Am. Stat. Assoc. 53, 457 (1958)) with right
+ * censoring and delayed entry; variance by Greenwood (1926), limits on the log(-log) scale, S^exp(-/+ z s / ln
+ * S). At risk at m are dwells whose complete or censored duration is at least m and whose entry age is below m.
+ * Under delayed entry a small risk set at short durations can take the curve to 0 by itself: look at `atRisk`.
  *
  * Durations in bins estimate the bin-averaged survival. Empty columns without complete dwells.
  *

@@ -69,7 +69,8 @@ function sumDownRows(cells: Float64Array, columns: number, firstColumn: number):
 /**
  * Sums the differences and returns the block.
  *
- * @param short differences of complete dwells of up to 64 bins in this state, (rows + 1) x 64, one per gate code counted
+ * @param short differences of complete dwells of up to 64 bins in this state, (rows + 1) x 64, one per gate
+ *   code counted
  * @param stateBins bins in this state, per row
  */
 export function finish(

@@ -1,7 +1,8 @@
-import { addRun, blockBuilder, finish, type BlockBuilder } from './block-builder.ts'
-import { EXACT_COLUMNS, columnOf, durationGrid, type DurationGrid } from './duration-grid.ts'
+import { blockBuilder, finish, type BlockBuilder } from './block-builder.ts'
+import { EXACT_COLUMNS, durationGrid } from './duration-grid.ts'
 import type { LevelledTrace } from './levels.ts'
-import { MOST_ROWS, runIntervals, type ClassSpans, type TakeRun } from './run-intervals.ts'
+import { MOST_ROWS, runIntervals, type ClassSpans } from './run-intervals.ts'
+import { runTaker } from './run-taker.ts'
 import type { TableGroup, ThresholdBlock, ThresholdTable } from './threshold-table.ts'
 import { usableSpans } from './usable-spans.ts'
 
@@ -98,24 +99,15 @@ function levelCounts(
   return Float64Array.from(counts)
 }
 
-/** Column of every duration up to a length, for speed; longer ones by search. */
-function columnFinder(grid: DurationGrid, longest: number): (m: number) => number {
-  const known = new Uint16Array(Math.min(longest, 1 << 16) + 1)
-  for (let m = 1, column = 0; m < known.length; m++) {
-    if (m >= grid.edges[column + 1]) column++
-    known[m] = column
-  }
-  return (m) => (m < known.length ? known[m] : columnOf(grid, m))
-}
-
 /**
  * Dwell tallies for every threshold, both states and every gate class that occurs, by one walk over the bins.
  *
- * Gaps, and both ends of the record, cut runs: a dwell that ends there is censored at its length, one that starts there
- * has an unseen start and counts in `unseenStarts`, `stateBins` and `longestBins` only. In the group of a gate class a dwell
- * whose start was seen is entered at its age when it comes into a window of the class at an age above 0, censored at its age when it
- * leaves one, and complete at its full length in the class of its last bin; guard bins belong to no class. `longestBins`
- * of a class is the greatest age reached inside it, and its `unseenStarts` counts stays in a window.
+ * Gaps, and both ends of the record, cut runs: a dwell that ends there is censored at its length, one that
+ * starts there has an unseen start and counts in `unseenStarts`, `stateBins` and `longestBins` only. In the
+ * group of a gate class a dwell whose start was seen is entered at its age when it comes into a window of the
+ * class at an age above 0, censored at its age when it leaves one, and complete at its full length in the class
+ * of its last bin; guard bins belong to no class. `longestBins` of a class is the greatest age reached inside
+ * it, and its `unseenStarts` counts stays in a window.
  *
  * @param gateCodes class code of every bin, as from `gateCodes`; null without a gate, or to ignore it
  */
@@ -132,7 +124,6 @@ export function buildThresholdTable(
   const longestSpan = spans.starts.reduce((most, start, j) => Math.max(most, spans.ends[j] - start), 1)
   const grid = durationGrid(longestSpan)
   const columns = grid.edges.length - 1
-  const columnAt = columnFinder(grid, longestSpan)
   const levels = levelsOf(levelled, range)
   const classes = classSpans(bins, gateCodes)
   const binsAt = levelCounts(levels, rows, levelled.gaps, gateCodes)
@@ -152,60 +143,7 @@ export function buildThresholdTable(
     (code) => new Int32Array(codesInUse.includes(code) ? 2 * (rows + 1) * EXACT_COLUMNS : 0),
   )
 
-  const tallyLongest = (builder: BlockBuilder, state: 0 | 1, m: number, from: number, to: number): void => {
-    const row = state === 0 ? from : to - 1
-    if (m > builder.longest[row]) builder.longest[row] = m
-  }
-  // Runs come in the order of their last bins, so the stretch of the last bin only moves on (or waits).
-  let last = 0
-  const takeByClass = (
-    state: 0 | 1,
-    start: number,
-    end: number,
-    from: number,
-    to: number,
-    startSeen: boolean,
-    endSeen: boolean,
-  ): void => {
-    while (classes.starts[last + 1] < end) last++
-    let piece = last
-    while (classes.starts[piece] > start) piece--
-    for (; piece <= last; piece++) {
-      const group = groupOfCode[classes.codes[piece]]
-      if (group < 0) continue
-      const builder = builders[group][state]
-      const age = Math.min(end, classes.starts[piece + 1]) - start
-      tallyLongest(builder, state, age, from, to)
-      if (!startSeen) {
-        builder.unseen[from]++
-        builder.unseen[to]--
-        continue
-      }
-      const entryAge = classes.starts[piece] - start
-      if (entryAge > 0) {
-        const column = columnAt(entryAge)
-        addRun(builder.entered, columns, rows, column, entryAge - grid.edges[column], from, to)
-      }
-      const column = columnAt(age)
-      const kind = piece === last && endSeen ? builder.complete : builder.censored
-      addRun(kind, columns, rows, column, age - grid.edges[column], from, to)
-    }
-  }
-  const take: TakeRun = (state, start, end, from, to, startSeen, endSeen) => {
-    if (to <= from) return
-    const builder = builders[0][state]
-    const m = end - start
-    tallyLongest(builder, state, m, from, to)
-    if (startSeen) {
-      const column = columnAt(m)
-      const kind = endSeen ? builder.complete : builder.censored
-      addRun(kind, columns, rows, column, m - grid.edges[column], from, to)
-    } else {
-      builder.unseen[from]++
-      builder.unseen[to]--
-    }
-    if (gateCodes !== null) takeByClass(state, start, end, from, to, startSeen, endSeen)
-  }
+  const take = runTaker(builders, grid, longestSpan, rows, classes, gateCodes === null ? null : groupOfCode)
   for (let j = 0; j < spans.starts.length; j++)
     runIntervals(levels, rows, spans.starts[j], spans.ends[j], classes, short, take)
 

@@ -83,9 +83,10 @@ function plainWords(
 }
 
 /**
- * The same with two bins to an addition: lifted by 2^15 - level, a 16-bit half has its top bit set exactly when the value
- * is at least the level, and never carries into its neighbour (Lamport 1975, multiple byte processing).
- * The 16 results of a word are laid side by side: even bins in the low half, odd bins in the high half.
+ * The same with two bins to an addition: lifted by 2^15 - level, a 16-bit half has its top bit set exactly when
+ * the value is at least the level, and never carries into its neighbour (Lamport 1975, multiple byte
+ * processing). The 16 results of a word are laid side by side: even bins in the low half, odd bins in the high
+ * half.
  */
 function pairedWords(
   values: Uint16Array | Uint32Array,

@@ -25,9 +25,9 @@ export function hostsLonger(own: ColumnDwells, grid: DurationGrid): LongerDwells
 }
 
 /**
- * Sum of f(m, dwells longer than m, bins in those dwells) over the durations m of each column. Exact where a column is one duration; in wider
- * columns f is taken at both ends and the middle (Simpson's rule) and the dwells of the column itself count as
- * spread evenly over it.
+ * Sum of f(m, dwells longer than m, bins in those dwells) over the durations m of each column. Exact where a
+ * column is one duration; in wider columns f is taken at both ends and the middle (Simpson's rule) and the
+ * dwells of the column itself count as spread evenly over it.
  */
 export function overColumns(
   grid: DurationGrid,

@@ -27,11 +27,12 @@ export const MOST_ROWS = 65535
 /**
  * Finds every run of either state at every threshold by one walk over one usable span.
  *
- * Definitions. The level of a bin is the number of rows at which it is on: on at row t when level > t. An on run
- * [s, e) with lowest level y whose higher neighbour has level x < y is a maximal on run exactly at rows x .. y - 1; an
- * off run with highest level y whose lower neighbour has level x > y, exactly at rows y .. x - 1. So the runs of all
- * thresholds are the nodes of two trees over the bins (one by lowest, one by highest level; Cartesian trees,
- * Vuillemin 1980) and two stacks visit them in the order of their last bins, each once: fewer runs than bins per state.
+ * Definitions. The level of a bin is the number of rows at which it is on: on at row t when level > t. An on
+ * run [s, e) with lowest level y whose higher neighbour has level x < y is a maximal on run exactly at rows x
+ * .. y - 1; an off run with highest level y whose lower neighbour has level x > y, exactly at rows y .. x - 1.
+ * So the runs of all thresholds are the nodes of two trees over the bins (one by lowest, one by highest level;
+ * Cartesian trees, Vuillemin 1980) and two stacks visit them in the order of their last bins, each once: fewer
+ * runs than bins per state.
  *
  * Invariants between bins: levels increase strictly up the on stack and decrease up the off stack; the top of both
  * has the level of the last bin; the bottom entries (level 0, level rows) stand for "never on" and "never off".

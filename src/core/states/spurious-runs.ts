@@ -9,9 +9,10 @@ export interface ErrorRates {
 }
 
 /**
- * Expected number of observed runs of m bins that a true dwell of n bins leaves when each of its bins is missed with
- * chance `missed`, independently: (1 - p)^m [2p + (n - m - 1) p^2] for m < n, (1 - p)^n for m = n, 0 beyond.
- * Derived here: a run of m < n bins either touches one end of the dwell (two places, one missed neighbour) or neither.
+ * Expected number of observed runs of m bins that a true dwell of n bins leaves when each of its bins is missed
+ * with chance `missed`, independently: (1 - p)^m [2p + (n - m - 1) p^2] for m < n, (1 - p)^n for m = n, 0
+ * beyond. Derived here: a run of m < n bins either touches one end of the dwell (two places, one missed
+ * neighbour) or neither.
  */
 export function splitRuns(n: number, missed: number, m: number): number {
   if (m > n) return 0
@@ -45,10 +46,11 @@ export interface StateColumns extends ColumnDwells {
 /**
  * Spurious and split dwells of one state to be expected per column, from the observed dwells of both states.
  *
- * The formulas want the true dwells; the observed ones stand in for them after two corrections. The expected spurious dwells are taken
- * away (never more than were seen), and as each of them has cut a dwell of the other state in two, that state's
- * number of dwells is lowered by as many, its bins kept. This is right to first order in (error rate x dwell length); where
- * dwells are mostly noise (threshold inside a level) the numbers say no more than that.
+ * The formulas want the true dwells; the observed ones stand in for them after two corrections. The expected
+ * spurious dwells are taken away (never more than were seen), and as each of them has cut a dwell of the other
+ * state in two, that state's number of dwells is lowered by as many, its bins kept. This is right to first
+ * order in (error rate x dwell length); where dwells are mostly noise (threshold inside a level) the numbers
+ * say no more than that.
  *
  * @param wrong chance that a bin of the other state is read as this one
  * @param missed chance that a bin of this state is read as the other
@@ -74,10 +76,10 @@ export function spuriousAndSplit(
 }
 
 /**
- * Spurious and split dwells to be expected in one row of the threshold table, from the tallies alone: cost grows with
- * columns only, cheap enough for every step of a drag. See `spuriousAndSplit`. Dwells with an unseen start are taken at
- * their mean length. In a gate class, the numbers of the whole record are scaled by the class's share of the bins in
- * which such dwells can arise.
+ * Spurious and split dwells to be expected in one row of the threshold table, from the tallies alone: cost
+ * grows with columns only, cheap enough for every step of a drag. See `spuriousAndSplit`. Dwells with an unseen
+ * start are taken at their mean length. In a gate class, the numbers of the whole record are scaled by the
+ * class's share of the bins in which such dwells can arise.
  *
  * @param group index into table.groups
  * @param state 0 off, 1 on: the dwells in question
@@ -128,8 +130,9 @@ function spuriousPerColumn(hosts: ColumnDwells, wrong: number, grid: DurationGri
 }
 
 /**
- * Chance that an observed dwell is spurious, per column: expected spurious over observed, 0..1. The observed number is
- * pooled over durations within a quarter of each other, so that one dwell more or less does not decide, and the chance never rises with duration.
+ * Chance that an observed dwell is spurious, per column: expected spurious over observed, 0..1. The observed
+ * number is pooled over durations within a quarter of each other, so that one dwell more or less does not
+ * decide, and the chance never rises with duration.
  */
 export function spuriousChance(
   spurious: Float64Array,
@@ -159,9 +162,9 @@ export function spuriousChance(
 const SAFE_SHARE = 0.05
 
 /**
- * Smallest duration, bins, from which on the expected spurious dwells are fewer than 5 % of the observed at every duration.
- * Durations at which nothing was observed count as one observed dwell: fewer than 0.05 expected spurious dwells
- * spoil nothing. One past the end of the grid when no duration is safe.
+ * Smallest duration, bins, from which on the expected spurious dwells are fewer than 5 % of the observed at
+ * every duration. Durations at which nothing was observed count as one observed dwell: fewer than 0.05 expected
+ * spurious dwells spoil nothing. One past the end of the grid when no duration is safe.
  */
 export function spuriousSafeBins(
   table: ThresholdTable,

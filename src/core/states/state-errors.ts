@@ -19,8 +19,9 @@ const BASELINE_GROUPS = 64
 /**
  * Error rates of every threshold for Poisson counts: p0 = P(Poisson(b) >= c), p1 = P(Poisson(b + A) < c).
  *
- * When the baseline moves, the threshold moves with it: bin i is on from ceil(c + b_i - bRef) counts. The rates are then means over all
- * usable bins, taken over 64 groups of equal width in b at the mean of each group; a constant baseline is exact.
+ * When the baseline moves, the threshold moves with it: bin i is on from ceil(c + b_i - bRef) counts. The rates
+ * are then means over all usable bins, taken over 64 groups of equal width in b at the mean of each group; a
+ * constant baseline is exact.
  *
  * @param thresholds integers on the levelled axis, ascending
  * @param baselinePerBin b_i, counts per bin, one per bin of the trace

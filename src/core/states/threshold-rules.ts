@@ -3,9 +3,10 @@ import type { CountHistogram } from './count-histogram.ts'
 import type { LevelledTrace } from './levels.ts'
 
 /**
- * Threshold at which a count is equally likely off and on, both misclassifications costing the same: the smallest
- * integer c with Poisson(c; on) >= Poisson(c; off), c = ceil[(on - off) / ln(on / off)]. 1 when the off level is 0; the
- * level itself, rounded up, when both are equal; NaN unless 0 <= off <= on and both are finite.
+ * Threshold at which a count is equally likely off and on, both misclassifications costing the same: the
+ * smallest integer c with Poisson(c; on) >= Poisson(c; off), c = ceil[(on - off) / ln(on / off)]. 1 when the
+ * off level is 0; the level itself, rounded up, when both are equal; NaN unless 0 <= off <= on and both are
+ * finite.
  *
  * @param offMean mean counts per bin off
  * @param onMean mean counts per bin on
@@ -19,8 +20,8 @@ export function crossingThreshold(offMean: number, onMean: number): number {
 }
 
 /**
- * Smallest count above off + sigmas x sqrt(off). For counts this is not a fixed error rate: at an off level of 1, five
- * standard deviations let through 8e-5 of the off bins, not 3e-7. NaN unless off >= 0.
+ * Smallest count above off + sigmas x sqrt(off). For counts this is not a fixed error rate: at an off level of
+ * 1, five standard deviations let through 8e-5 of the off bins, not 3e-7. NaN unless off >= 0.
  */
 export function sigmaThreshold(offMean: number, sigmas: number): number {
   return Math.floor(offMean + sigmas * Math.sqrt(offMean)) + 1
@@ -69,8 +70,9 @@ export interface RuledThreshold {
 const counted = (counts: number): string => `${Number(counts.toPrecision(4))}`
 
 /**
- * Threshold by the recipe's rule. When the rule cannot be applied (levels not found, no threshold set by hand, a single
- * value), the next one that can is used, and the message says so: crossing, least-variance, one above the lowest.
+ * Threshold by the recipe's rule. When the rule cannot be applied (levels not found, no threshold set by hand,
+ * a single value), the next one that can is used, and the message says so: crossing, least-variance, one above
+ * the lowest.
  */
 export function thresholdByRule(
   choices: Recipe['threshold'],

@@ -38,10 +38,13 @@ export interface ThresholdBlock {
   readonly enteredCount: Float64Array
   readonly enteredSum: Float64Array
   readonly enteredSquares: Float64Array
-  /** Per row: dwells whose start was not seen (first of the record, after a gap): not used in fits. */
+  /**
+   * Per row: dwells whose start was not seen (first of the record, after a gap): not used in fits. In a gate
+   * class: their stays in its windows.
+   */
   readonly unseenStarts: Float64Array
   /** Per row: bins in this state, all dwells. */
   readonly stateBins: Float64Array
-  /** Per row: longest dwell in this state, bins, complete or not. */
+  /** Per row: longest dwell in this state, bins, complete or not. In a gate class: greatest age reached inside it. */
   readonly longestBins: Float64Array
 }

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { binnedDensity, neighbourDensity } from '../../../src/core/dwells/density.ts'
 import { seededRandom } from '../../../src/core/numeric/seeded-random.ts'

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import type { DwellSample } from '../../../src/core/dwells/dwell-sample.ts'
 import { sampleFromDwells, sampleFromRow } from '../../../src/core/dwells/dwell-sample-of.ts'
@@ -60,7 +60,7 @@ describe('samples', () => {
           expect(nodes).toEqual(exact)
           const plain = plainTally(levelledOf(values), codes, 1, code)[state]
           const listed = (sample: DwellSample, [bins, weights]: (typeof KINDS)[number]): number[] =>
-            Array.from(sample[bins]).flatMap((m, i) => new Array<number>(sample[weights][i]).fill(m))
+            Array.from(sample[bins]).flatMap((m, i) => Array.from({ length: sample[weights][i] }, () => m))
           expect(listed(exact, KINDS[0])).toEqual(plain.complete.toSorted((a, b) => a - b))
           expect(listed(exact, KINDS[1])).toEqual(plain.censored.toSorted((a, b) => a - b))
           expect(listed(exact, KINDS[2])).toEqual(plain.entered.toSorted((a, b) => a - b))

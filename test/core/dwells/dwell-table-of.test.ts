@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import type { DwellTable } from '../../../src/core/dwells/dwell-table.ts'
 import { dwellTableOf } from '../../../src/core/dwells/dwell-table-of.ts'
@@ -15,7 +15,7 @@ const record = fc.record({
 })
 
 function build(values: number[], marks: boolean[], codes: number[], gate: TableGroup) {
-  const gaps = Uint8Array.from(values, (_, i) => (marks[i] === true && i % 5 === 0 ? 1 : 0))
+  const gaps = Uint8Array.from(values, (_, i) => (marks[i] && i % 5 === 0 ? 1 : 0))
   const gateCodes = Uint8Array.from(values, (_, i) => codes[(i >> 2) % codes.length])
   const levelled = levelledOf(values, { gaps, startSeconds: 2 })
   return { gaps, gateCodes, table: dwellTableOf(statesAt(levelled, 1), levelled, gateCodes, gate) }
@@ -29,7 +29,7 @@ describe('dwellTableOf', () => {
     fc.assert(
       fc.property(record, ({ values, marks, codes, gate }) => {
         const { gaps, gateCodes, table } = build(values, marks, codes, gate)
-        const seen = new Array<number>(values.length).fill(-1)
+        const seen = Array.from({ length: values.length }, () => -1)
         for (let row = 0; row < table.rows; row++) {
           const from = firstBin(table, row)
           for (let i = from; i < from + table.durationBins[row]; i++) {

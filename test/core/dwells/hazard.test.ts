@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { hazardTimesAge } from '../../../src/core/dwells/hazard.ts'
 import { seededRandom } from '../../../src/core/numeric/seeded-random.ts'
@@ -48,7 +48,11 @@ describe('hazardTimesAge', () => {
   it('takes delayed entries out of the time at risk', () => {
     // Ten dwells taken up at age 4 that end at 6 are at risk for a bin and a half each.
     const points = hazardTimesAge(
-      sampleOf(new Array<number>(10).fill(6), [], new Array<number>(10).fill(4)),
+      sampleOf(
+        Array.from({ length: 10 }, () => 6),
+        [],
+        Array.from({ length: 10 }, () => 4),
+      ),
       7,
     )
     expect(points).toHaveLength(1)

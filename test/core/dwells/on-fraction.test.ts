@@ -63,7 +63,7 @@ describe('onFraction', () => {
     const levelled = levelledOf(telegraphValues(20000, 41))
     const errors = { falseOnPerBin: 0.02, falseOffPerBin: 0.03 }
     const dwells = dwellTableOf(statesAt(levelled, 33), levelled, null, 'all', errors)
-    const seen = levelled.values.reduce((n, v) => n + (v >= 33 ? 1 : 0), 0) / 20000
+    const seen = Array.from(levelled.values).filter((v) => v >= 33).length / 20000
     const found = onFraction(dwells, { ...EXACT, ...errors })
     expect(found.estimate).toBeCloseTo((seen - 0.02) / 0.95, 12)
     expect(found.low).toBeLessThan(found.estimate as number)

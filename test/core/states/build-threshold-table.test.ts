@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { buildThresholdTable, thresholdRange } from '../../../src/core/states/build-threshold-table.ts'
 import type { LevelledTrace } from '../../../src/core/states/levels.ts'

@@ -86,9 +86,9 @@ export function plainTally(
 /** Column tallies of a list of durations: number, sum and sum of squares of m - first m of the column. */
 export function inColumns(grid: DurationGrid, durations: readonly number[]) {
   const columns = grid.edges.length - 1
-  const count = new Array<number>(columns).fill(0)
-  const sum = new Array<number>(columns).fill(0)
-  const squares = new Array<number>(columns).fill(0)
+  const count = Array.from({ length: columns }, () => 0)
+  const sum = Array.from({ length: columns }, () => 0)
+  const squares = Array.from({ length: columns }, () => 0)
   for (const m of durations) {
     const column = columnOf(grid, m)
     const y = m - grid.edges[column]

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { durationGrid } from '../../../src/core/states/duration-grid.ts'
 import { singlePassTally } from '../../../src/core/states/single-pass.ts'

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { seededRandom } from '../../../src/core/numeric/seeded-random.ts'
 import { buildThresholdTable } from '../../../src/core/states/build-threshold-table.ts'

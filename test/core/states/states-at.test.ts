@@ -1,11 +1,11 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { statesAt } from '../../../src/core/states/states-at.ts'
 import { levelledOf, telegraphValues } from './plain-tally.ts'
 
 /** State of every bin, written out from the runs. */
 function written({ bins, starts, states }: ReturnType<typeof statesAt>): number[] {
-  const out = new Array<number>(bins).fill(-1)
+  const out = Array.from({ length: bins }, () => -1)
   for (let r = 0; r < starts.length; r++)
     out.fill(states[r], starts[r], r + 1 < starts.length ? starts[r + 1] : bins)
   return out
@@ -20,7 +20,7 @@ describe('statesAt', () => {
         fc.integer({ min: -5, max: 5 }),
         fc.integer({ min: -6, max: 14 }),
         (values, marks, offset, threshold) => {
-          const gaps = Uint8Array.from(values, (_, i) => (marks[i] === true ? 1 : 0))
+          const gaps = Uint8Array.from(values, (_, i) => (marks[i] ? 1 : 0))
           const sequence = statesAt(levelledOf(values, { offset, gaps }), threshold)
           expect(written(sequence)).toEqual(
             values.map((v, i) => (gaps[i] === 1 ? 255 : v + offset >= threshold ? 1 : 0)),
