@@ -15,6 +15,8 @@ export interface Summit {
 /** A gain in ln L smaller than this changes no number that is shown. */
 const LEAST_GAIN = 1e-7
 const MOST_ROUNDS = 60
+/** Step of the differences as a share of the width of the dome along its coordinate. */
+const DOME_SHARE = 0.4
 
 function clip(x: number, { low, high }: Range): number {
   return Math.min(high, Math.max(low, x))
@@ -46,29 +48,30 @@ export function climb(
     const step = model === null ? null : newtonStep(model, x, ranges)
     let moved = false
     if (step !== null && model !== null) {
+      // Differences over a third of the width of the dome are right to a small part of it; wider ones mislead.
+      const wanted = steps.map((size, i) =>
+        model.hessian[i][i] < 0 ? Math.min(scales[i], DOME_SHARE / Math.sqrt(-model.hessian[i][i])) : size,
+      )
+      const fine = steps.every((size, i) => size < 2.5 * wanted[i])
+      steps = wanted
       // Predicted gain of the full step: nothing to win means that this is the summit.
       const predicted = 0.5 * model.gradient.reduce((sum, slope, i) => sum + slope * step[i], 0)
-      if (predicted < LEAST_GAIN && Number.isFinite(best))
+      if (fine && predicted < LEAST_GAIN && Number.isFinite(best))
         return { x, value: best, evaluations, converged: true }
       for (let damping = 1; damping > 1e-4; damping *= 0.35) {
         const trial = x.map((value, i) => clip(value + damping * step[i], ranges[i]))
         const value = at(trial)
         if (value > best) {
-          const gain = value - best
-          steps = steps.map((size, i) =>
-            Math.max(1e-4 * scales[i], Math.min(size, 0.3 * Math.abs(trial[i] - x[i]) + 1e-3 * scales[i])),
-          )
+          moved = value - best > LEAST_GAIN
           x = trial
           best = value
-          moved = gain > LEAST_GAIN
           break
         }
       }
-      if (!moved) {
-        // Newton finds nothing better: a summit, if the model is a dome here and no neighbour of it is higher.
-        if (isSummit(at, x, best, ranges, scales))
-          return { x, value: best, evaluations, converged: Number.isFinite(best) }
-      }
+      // Newton finds nothing better with sound differences: a summit, if no neighbour is higher.
+      if (!moved && fine && isSummit(at, x, best, ranges, steps))
+        return { x, value: best, evaluations, converged: Number.isFinite(best) }
+      if (!moved && !fine) continue
     }
     if (!moved) {
       const simplex = minimiseNelderMead(
@@ -171,17 +174,17 @@ function newtonStep(
   ]
 }
 
-/** No neighbour a hundredth of a scale away is higher by more than matters. */
+/** No neighbour half a step away along a coordinate is higher by more than matters. */
 function isSummit(
   at: (x: readonly number[]) => number,
   x: readonly number[],
   value: number,
   ranges: readonly Range[],
-  scales: readonly number[],
+  steps: readonly number[],
 ): boolean {
   for (let i = 0; i < x.length; i++) {
     for (const sign of [-1, 1]) {
-      const trial = x.map((v, j) => (j === i ? clip(v + sign * 0.02 * scales[i], ranges[i]) : v))
+      const trial = x.map((v, j) => (j === i ? clip(v + sign * 0.5 * steps[i], ranges[i]) : v))
       if (at(trial) > value + LEAST_GAIN) return false
     }
   }

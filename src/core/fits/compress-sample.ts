@@ -13,42 +13,45 @@ const WORTHWHILE = 160
 
 /**
  * The same dwells on fewer nodes. Durations of at least 64 bins are gathered in groups of equal ratio; each group
- * becomes two nodes of half its weight at mean -+ standard deviation, which reproduces its weight, mean and
- * variance, so that the sum of any smooth g over the group is kept to third order in the group's width: for
- * g = ln P of the laws here, better than 1e-4 of one dwell's contribution a group.
+ * becomes two nodes of half its weight at mean -/+ standard deviation, which reproduces its weight, mean and
+ * variance, so that the sum of any smooth g over the group is kept to third order in the group's width. For the
+ * laws here the summed ln P changes by less than 1e-6 of itself, and by the same amount at neighbouring parameters.
  */
 export function compressed({ bins, weights }: WeightedBins): WeightedBins {
   if (bins.length < WORTHWHILE) return { bins, weights }
-  const sums = new Map<number, { weight: number; sum: number; squares: number; origin: number }>()
+  const longest = bins.reduce((most, m) => Math.max(most, m), EXACT_BELOW)
+  if (!Number.isFinite(longest)) return { bins, weights }
+  const groups = Math.floor(GROUPS_PER_EFOLD * Math.log(longest / EXACT_BELOW)) + 2
+  const weight = new Float64Array(groups)
+  const sum = new Float64Array(groups)
+  const squares = new Float64Array(groups)
+  const origin = new Float64Array(groups)
   const outBins: number[] = []
   const outWeights: number[] = []
   for (let i = 0; i < bins.length; i++) {
     const m = bins[i]
-    if (m < EXACT_BELOW) {
+    if (!(m >= EXACT_BELOW)) {
       outBins.push(m)
       outWeights.push(weights[i])
       continue
     }
-    const key = Math.floor(GROUPS_PER_EFOLD * Math.log(m / EXACT_BELOW))
-    let group = sums.get(key)
-    if (group === undefined) {
-      group = { weight: 0, sum: 0, squares: 0, origin: m }
-      sums.set(key, group)
-    }
-    const y = m - group.origin
-    group.weight += weights[i]
-    group.sum += weights[i] * y
-    group.squares += weights[i] * y * y
+    const group = Math.floor(GROUPS_PER_EFOLD * Math.log(m / EXACT_BELOW))
+    if (weight[group] === 0) origin[group] = m
+    const y = m - origin[group]
+    weight[group] += weights[i]
+    sum[group] += weights[i] * y
+    squares[group] += weights[i] * y * y
   }
-  for (const { weight, sum, squares, origin } of sums.values()) {
-    const mean = sum / weight
-    const spread = Math.sqrt(Math.max(0, squares / weight - mean * mean))
-    if (spread < 1e-9 * origin) {
-      outBins.push(origin + mean)
-      outWeights.push(weight)
+  for (let group = 0; group < groups; group++) {
+    if (weight[group] === 0) continue
+    const mean = sum[group] / weight[group]
+    const spread = Math.sqrt(Math.max(0, squares[group] / weight[group] - mean * mean))
+    if (spread < 1e-9 * origin[group]) {
+      outBins.push(origin[group] + mean)
+      outWeights.push(weight[group])
     } else {
-      outBins.push(origin + mean - spread, origin + mean + spread)
-      outWeights.push(0.5 * weight, 0.5 * weight)
+      outBins.push(origin[group] + mean - spread, origin[group] + mean + spread)
+      outWeights.push(0.5 * weight[group], 0.5 * weight[group])
     }
   }
   return { bins: Float64Array.from(outBins), weights: Float64Array.from(outWeights) }

@@ -1,4 +1,5 @@
 import type { Law } from '../laws/law.ts'
+import { meanLog } from '../laws/weighted-mean.ts'
 import { type LawMaximum, maximiseLaw, type MaximiseOptions } from './maximise-law.ts'
 
 /** Durations known exactly: left truncation at `shortestSeconds`, right censoring where `ended` is 0. */
@@ -31,9 +32,12 @@ export function fitContinuous(law: Law, dwells: ContinuousDwells, options: Maxim
   return maximiseLaw(
     law,
     continuousLikelihood(law, dwells),
-    start,
-    dwells.seconds.length,
-    dwells.shortestSeconds,
+    [start],
+    {
+      dwells: dwells.seconds.length,
+      shortestSeconds: dwells.shortestSeconds,
+      typicalSeconds: Math.exp(meanLog(dwells.seconds, weights)),
+    },
     options,
   )
 }

@@ -35,14 +35,16 @@ export function fitDiscretePower(values: Multiplicities, shortest: number): Disc
   return { alpha, shortest, n, logLikelihood: -value, distance }
 }
 
-/** The shortest value at which the Kolmogorov-Smirnov distance of the fit is least (same source, section 3.3). */
-export function discretePowerByDistance(values: Multiplicities): DiscretePower {
+/**
+ * The shortest value at which the Kolmogorov-Smirnov distance of the fit is least (same source, section 3.3), leaving at
+ * least ten values and two distinct ones. Null when there are fewer.
+ */
+export function discretePowerByDistance(values: Multiplicities): DiscretePower | null {
   let best: DiscretePower | null = null
   for (const [shortest] of values.slice(0, -1)) {
     const fit = fitDiscretePower(values, shortest)
     if (fit.n < 10) break
     if (best === null || fit.distance < best.distance) best = fit
   }
-  if (best === null) throw new Error('discretePowerByDistance expects at least two distinct values')
   return best
 }

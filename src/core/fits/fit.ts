@@ -37,6 +37,6 @@ export interface Fit {
   readonly shortestSeconds: number
   readonly evaluations: number
   readonly status: FitStatus
-  /** One sentence a user can act on; empty when status is ok. */
+  /** One sentence a user can act on; empty when there is nothing to say. With status ok it warns of few dwells. */
   readonly message: string
 }

@@ -1,8 +1,9 @@
 import type { Law } from '../laws/law.ts'
 import { chiSquareQuantile } from '../numeric/chi-square.ts'
-import { climb, localModel, type Range } from './climb.ts'
+import { climb, localModel, type LocalModel } from './climb.ts'
 import type { Estimate, FitStatus } from './fit.ts'
 import { profileLimit } from './profile-limit.ts'
+import { type ProfileAxis, searchFrame } from './search-frame.ts'
 
 /** Best coordinates of a law under some likelihood, with intervals of the reported parameters. */
 export interface LawMaximum {
@@ -19,61 +20,73 @@ export interface MaximiseOptions {
   readonly intervals: boolean
 }
 
-/** Rates above this many per shortest duration describe nothing that could be seen. */
-const FASTEST = 50
-
-/** Search ranges: those of the law, and for rates an upper end tied to the shortest duration. */
-export function searchRanges(law: Law, shortestSeconds: number): Range[] {
-  return law.coordinates.map(({ name, low, high }) =>
-    name === 'kappa' || name === 'rate'
-      ? { low: name === 'rate' ? 1e-12 / shortestSeconds : 0, high: FASTEST / shortestSeconds }
-      : { low: name === 'alpha' && low === 1 ? 1 + 1e-9 : low, high },
-  )
+/** Orders of magnitude, for ranges and first step sizes. */
+export interface DwellScale {
+  /** Complete ones. */
+  readonly dwells: number
+  /** Where the law is anchored. */
+  readonly shortestSeconds: number
+  /** Geometric mean of the complete ones. */
+  readonly typicalSeconds: number
 }
 
-function scalesOf(law: Law, at: readonly number[], dwells: number): number[] {
-  const share = Math.max(0.02, 1 / Math.sqrt(Math.max(dwells, 1)))
-  return law.coordinates.map(({ name }, i) => {
-    if (name === 'kappa' || name === 'rate') return Math.max(0.5 * share * at[i], 1e-300)
-    if (name === 'lnMedian' || name === 'lnTau') return 2 * share
-    return share
-  })
-}
+/** A cutoff that wins less ln L than this is no cutoff. */
+const LEAST_CUTOFF_GAIN = 1e-6
 
 /**
  * Maximum likelihood with profile-likelihood intervals.
- * @param logLikelihood of the free coordinates
- * @param dwells number of complete dwells, for the first step sizes
+ *
+ * Cutoff laws: no cutoff is the edge kappa = 0. When it lies inside the interval, tau has a finite low and `high`
+ * null (a bound); when it is the best, the estimate is null too and the status `at-bound`.
+ * @param logLikelihood of the free coordinates of the law
+ * @param starts free coordinates to start from; the highest is used, the others when the search does not settle
  */
 export function maximiseLaw(
   law: Law,
   logLikelihood: (coordinates: readonly number[]) => number,
-  start: readonly number[],
-  dwells: number,
-  shortestSeconds: number,
+  starts: readonly (readonly number[])[],
+  { dwells, shortestSeconds, typicalSeconds }: DwellScale,
   options: MaximiseOptions,
 ): LawMaximum {
-  const ranges = searchRanges(law, shortestSeconds)
-  const summit = climb(logLikelihood, start, ranges, scalesOf(law, start, dwells))
-  let { x, value, evaluations } = summit
+  const frame = searchFrame(law, shortestSeconds, typicalSeconds)
+  const { ranges } = frame
+  let evaluations = 0
+  const f = (search: readonly number[]): number => {
+    evaluations++
+    const value = logLikelihood(frame.toLaw(search))
+    return Number.isNaN(value) ? Number.NEGATIVE_INFINITY : value
+  }
   const kappa = law.coordinates.findIndex(({ name }) => name === 'kappa')
+  const rate = kappa >= 0 ? Math.max(...starts.map((start) => start[kappa])) : 0
 
-  // No cutoff is the edge kappa = 0: compare with the best there, so that the edge is met exactly.
+  // The summit, from the most likely start first.
+  const searches = starts.map((start) => frame.fromLaw(start))
+  if (searches.length > 1) {
+    const heights = new Map(searches.map((search) => [search, f(clipped(search, frame.ranges))]))
+    searches.sort((a, b) => (heights.get(b) ?? 0) - (heights.get(a) ?? 0))
+  }
+  let summit = climb(f, searches[0], ranges, frame.scales(searches[0], dwells, rate))
+  for (const search of searches.slice(1)) {
+    if (summit.converged) break
+    const other = climb(f, search, ranges, frame.scales(search, dwells, rate))
+    if (other.value > summit.value || !Number.isFinite(summit.value)) summit = other
+  }
+  let y = summit.x
+  let value = summit.value
+  let settled = summit.converged
   let edge = Number.NEGATIVE_INFINITY
-  let edgeAlpha = Number.NaN
   if (kappa >= 0) {
     const along = climb(
-      ([alpha]) => logLikelihood([alpha, 0]),
-      [Math.max(x[0], 1.2)],
+      ([alpha]) => f([alpha, 0]),
+      [Math.max(y[0], 1.2)],
       [{ low: 1 + 1e-6, high: ranges[0].high }],
-      [scalesOf(law, x, dwells)[0]],
+      [frame.scales(y, dwells, rate)[0]],
     )
-    evaluations += along.evaluations
     edge = along.value
-    edgeAlpha = along.x[0]
-    if (edge >= value - 1e-9) {
-      x = [edgeAlpha, 0]
+    if (edge >= value - LEAST_CUTOFF_GAIN) {
+      y = [along.x[0], 0]
       value = edge
+      settled = along.converged
     }
   }
   if (!Number.isFinite(value)) {
@@ -81,94 +94,107 @@ export function maximiseLaw(
       law,
       evaluations,
       'not-finite',
-      'The likelihood is not finite for any parameter tried: check the shortest fitted dwell.',
+      'The likelihood is not finite for any parameter tried: this law cannot make these dwells.',
     )
   }
-  if (!summit.converged && value === summit.value) {
+  const best = frame.toLaw(y)
+  if (!settled) {
     return {
       ...failed(
         law,
         evaluations,
         'not-converged',
-        'The search did not settle: the dwells hardly constrain this law.',
+        'The search did not settle: the dwells hardly constrain this law. Prefer a law with fewer parameters.',
       ),
-      coordinates: x,
+      coordinates: best,
       logLikelihood: value,
     }
   }
-  const reported = law.parametersOf(x)
-  const atEdge = x.map(
-    (v, i) => v <= ranges[i].low || v >= ranges[i].high || nearEdge(v, ranges[i], law.coordinates[i].name),
-  )
-  const level = value - 0.5 * chiSquareQuantile(options.confidence, 1)
-  const errors = options.intervals
-    ? standardErrors(
-        logLikelihood,
-        x,
-        value,
-        ranges,
-        scalesOf(
-          law,
-          x.map((v, i) => (i === kappa ? Math.max(v, 0.02 * start[i]) : v)),
-          dwells,
-        ),
-      )
-    : []
+
+  const reported = law.parametersOf(best)
+  const z = Math.sqrt(chiSquareQuantile(options.confidence, 1))
+  const model = options.intervals ? localModel(f, y, value, ranges, frame.scales(y, dwells, rate)) : null
   const parameters: Record<string, Estimate> = {}
   for (const [i, { name, unit }] of law.parameters.entries()) {
-    const finite = Number.isFinite(reported[i]) ? reported[i] : null
+    const estimate = existing(reported[i])
     if (!options.intervals) {
-      parameters[name] = { estimate: finite, low: null, high: null, unit }
+      parameters[name] = { estimate, low: null, high: null, unit }
       continue
     }
-    const none = i === kappa && edge > level
-    const below = none
-      ? { x: 0, evaluations: 0 }
-      : profileLimit(logLikelihood, x, level, i, -1, ranges, errors)
-    const above = profileLimit(logLikelihood, x, level, i, 1, ranges, errors)
-    evaluations += below.evaluations + above.evaluations
-    parameters[name] = { estimate: finite, ...reportedLimits(law, x, i, below.x, above.x), unit }
+    const axis = frame.axes[i]
+    const at = axis.read(y)
+    const problem = {
+      f: (v: number, other: number) => f(axis.place(v, other)),
+      range: axis.range,
+      otherRange: axis.otherRange,
+      best: { ...at, height: value },
+      ...widths(axis, y, model, frame.scales(y, dwells, rate)),
+    }
+    const openBelow = i === kappa && edge > value - 0.5 * z * z
+    const below = openBelow ? 0 : profileLimit(problem, z, -1)
+    const above = profileLimit(problem, z, 1)
+    parameters[name] = { estimate, ...reportedLimits(law, best, i, below, above), unit }
   }
-  const edgeName = atEdge.indexOf(true)
-  if (edgeName >= 0) {
-    const message =
-      edgeName === kappa
-        ? 'No cutoff improves the fit: the cutoff time is a lower bound.'
-        : `The best ${law.parameters[edgeName].symbol} lies at the end of its range: this law does not suit these dwells.`
-    return { coordinates: x, parameters, logLikelihood: value, evaluations, status: 'at-bound', message }
-  }
+  const message = edgeMessage(law, best, frame.axes)
   return {
-    coordinates: x,
+    coordinates: best,
     parameters,
     logLikelihood: value,
     evaluations,
-    status: options.intervals ? 'ok' : 'no-interval',
-    message: '',
+    status: message !== '' ? 'at-bound' : options.intervals ? 'ok' : 'no-interval',
+    message,
   }
 }
 
-/** Standard errors from the curvature at the maximum; the first guess of the width of the intervals. */
-function standardErrors(
-  f: (x: readonly number[]) => number,
-  x: readonly number[],
-  value: number,
-  ranges: readonly Range[],
-  scales: readonly number[],
-): number[] {
-  const model = localModel(f, x, value, ranges, scales)
-  if (model === null) return [...scales]
-  const { hessian } = model
-  if (x.length === 1) return [hessian[0][0] < 0 ? 1 / Math.sqrt(-hessian[0][0]) : scales[0]]
-  const determinant = hessian[0][0] * hessian[1][1] - hessian[0][1] ** 2
-  return x.map((_, i) => {
-    const variance = -hessian[1 - i][1 - i] / determinant
-    return determinant > 0 && variance > 0 ? Math.sqrt(variance) : scales[i]
-  })
+function clipped(search: readonly number[], ranges: readonly { low: number; high: number }[]): number[] {
+  return search.map((v, i) => Math.min(ranges[i].high, Math.max(ranges[i].low, v)))
 }
 
-function nearEdge(value: number, range: Range, name: string): boolean {
-  if (name === 'kappa' || name === 'rate') return false
-  return value - range.low < 1e-3 * Math.abs(range.low) || range.high - value < 1e-3 * Math.abs(range.high)
+/** A time of 0 or infinity is no time. */
+function existing(value: number): number | null {
+  return Number.isFinite(value) && value !== 0 ? value : null
+}
+
+/**
+ * First guesses for the walk along one axis from the curvature at the top, carried from the search coordinates to
+ * (value, other) by the Jacobian of the axis.
+ */
+function widths(
+  axis: ProfileAxis,
+  y: readonly number[],
+  model: LocalModel | null,
+  scales: readonly number[],
+): { error: number; otherError: number; otherSlope: number } {
+  const { value, other } = axis.read(y)
+  const step = 1e-5
+  const dValue = step * Math.max(Math.abs(value), 1e-3)
+  const dOther = step * Math.max(Math.abs(other), 1e-3)
+  const byValue = column(axis.place(value + dValue, other), axis.place(value - dValue, other), 2 * dValue)
+  const fallback = (): { error: number; otherError: number; otherSlope: number } => {
+    const size = Math.hypot(...byValue.map((slope, i) => slope / scales[i]))
+    const guess = size > 0 ? 1 / size : Math.max(Math.abs(value), 1) * 0.1
+    const otherGuess = axis.otherRange === null ? 1 : Math.max(0.1 * Math.abs(other), 1e-3)
+    return { error: guess, otherError: otherGuess, otherSlope: 0 }
+  }
+  if (model === null) return fallback()
+  const { hessian } = model
+  if (axis.otherRange === null) {
+    const curvature = -hessian[0][0] * byValue[0] ** 2
+    return curvature > 0 ? { error: 1 / Math.sqrt(curvature), otherError: 1, otherSlope: 0 } : fallback()
+  }
+  const byOther = column(axis.place(value, other + dOther), axis.place(value, other - dOther), 2 * dOther)
+  const form = (a: readonly number[], b: readonly number[]): number =>
+    -a.reduce((sum, ai, i) => sum + ai * b.reduce((inner, bj, j) => inner + hessian[i][j] * bj, 0), 0)
+  const vv = form(byValue, byValue)
+  const vo = form(byValue, byOther)
+  const oo = form(byOther, byOther)
+  const profiled = vv - (vo * vo) / oo
+  if (!(oo > 0) || !(profiled > 0)) return fallback()
+  return { error: 1 / Math.sqrt(profiled), otherError: 1 / Math.sqrt(oo), otherSlope: -vo / oo }
+}
+
+function column(up: readonly number[], down: readonly number[], width: number): number[] {
+  return up.map((v, i) => (v - down[i]) / width)
 }
 
 /** Limits of a reported parameter from those of its coordinate; rates turn round when they become times. */
@@ -179,15 +205,26 @@ function reportedLimits(
   below: number | null,
   above: number | null,
 ): { low: number | null; high: number | null } {
-  const report = (value: number | null): number | null => {
-    if (value === null) return null
-    const parameter = law.parametersOf(best.map((v, i) => (i === index ? value : v)))[index]
-    return Number.isFinite(parameter) ? parameter : null
-  }
+  const report = (value: number | null): number | null =>
+    value === null ? null : existing(law.parametersOf(best.map((v, i) => (i === index ? value : v)))[index])
   const { name } = law.coordinates[index]
   return name === 'kappa' || name === 'rate'
     ? { low: report(above), high: report(below) }
     : { low: report(below), high: report(above) }
+}
+
+/** Says which coordinate sits at the end of its range; empty when none does. */
+function edgeMessage(law: Law, best: readonly number[], axes: readonly ProfileAxis[]): string {
+  for (const [i, { name }] of law.coordinates.entries()) {
+    const { low, high } = axes[i].range
+    if (name === 'kappa' && best[i] <= low)
+      return 'No cutoff improves the fit: the cutoff time is a lower bound. A longer record could show one.'
+    const near = (end: number): boolean => Math.abs(best[i] - end) < 1e-3 * Math.abs(end)
+    const beyond = best[i] <= low || best[i] >= high
+    if (beyond || (name !== 'kappa' && name !== 'rate' && (near(low) || near(high))))
+      return `The best ${law.parameters[i].symbol} lies at the end of its range: this law does not suit these dwells.`
+  }
+  return ''
 }
 
 /** A fit without numbers, with the reason. */

@@ -1,69 +1,99 @@
-import { findRoot } from '../numeric/root.ts'
 import type { Range } from './climb.ts'
 import { ridge } from './ridge.ts'
 
-/** One end of a profile-likelihood interval. */
-export interface ProfileLimit {
-  /** Coordinate value; null when the profile does not fall to the level inside the range. */
-  readonly x: number | null
-  readonly evaluations: number
+/** What a profile walks on: ln L at a value of the profiled coordinate and of the other. */
+export interface ProfileProblem {
+  f(value: number, other: number): number
+  readonly range: Range
+  /** Null when there is no other coordinate. */
+  readonly otherRange: Range | null
+  /** Where ln L is greatest, and that greatest value. */
+  readonly best: { readonly value: number; readonly other: number; readonly height: number }
+  /** Rough standard error of the profiled coordinate, > 0. */
+  readonly error: number
+  /** Rough width of ln L along the other coordinate at a fixed value of the profiled one, > 0. */
+  readonly otherError: number
+  /** Slope of the ridge: change of the other per change of the value. */
+  readonly otherSlope: number
 }
 
-const MOST_STEPS = 40
-/** Limits are found to this share of a standard error. */
-const PRECISION = 1e-3
+const MOST_TRIALS = 60
+/** The root of twice the fall of ln L is met to this; interpolation then gains two more digits. */
+const CLOSE = 0.02
 
 /**
- * Where the profile likelihood of coordinate `index` falls to `level`, going from the maximum towards `side`; the
- * other coordinate, if any, is maximised at every trial (warm start from the last). Profile-likelihood limits: Venzon
- * and Moolgavkar, Appl. Stat. 37, 87 (1988).
- * @param errors rough standard error of each coordinate, > 0: the first trial is two of them away
+ * Where the profile likelihood falls by z^2/2 below its top, going from there towards `side`; the other coordinate is
+ * maximised at every trial. Null when it does not fall that far inside the range. Profile-likelihood limits: Venzon
+ * and Moolgavkar, Appl. Stat. 37, 87 (1988). The walk uses r = sqrt(2 (top - profile)), which is nearly
+ * linear in the coordinate, so that few trials are needed.
  */
-export function profileLimit(
-  f: (x: readonly number[]) => number,
-  best: readonly number[],
-  level: number,
-  index: number,
-  side: -1 | 1,
-  ranges: readonly Range[],
-  errors: readonly number[],
-): ProfileLimit {
-  let evaluations = 0
-  const counted = (x: readonly number[]): number => {
-    evaluations++
-    const value = f(x)
-    return Number.isNaN(value) ? Number.NEGATIVE_INFINITY : value
-  }
-  const other = best.length === 2 ? 1 - index : null
-  let warm = other === null ? 0 : best[other]
-  const profile = (value: number): number => {
-    if (other === null) return counted([value]) - level
-    const inner = ridge(
-      (free) => counted(index === 0 ? [value, free] : [free, value]),
-      warm,
-      ranges[other],
-      errors[other],
-    )
-    if (Number.isFinite(inner.value)) warm = inner.x
-    return inner.value - level
-  }
-  const bound = side < 0 ? ranges[index].low : ranges[index].high
-  if (best[index] === bound) return { x: null, evaluations }
-  let inside = best[index]
-  let step = 2 * errors[index]
-  for (let round = 0; round < MOST_STEPS; round++) {
-    const trial = side < 0 ? Math.max(bound, inside - step) : Math.min(bound, inside + step)
-    const height = profile(trial)
-    if (!(height > 0)) {
-      const found = findRoot(profile, inside, trial, {
-        tolerance: PRECISION * errors[index],
-        mostEvaluations: 30,
-      })
-      return { x: Number.isFinite(found.x) ? found.x : 0.5 * (inside + trial), evaluations }
+export function profileLimit(problem: ProfileProblem, z: number, side: -1 | 1): number | null {
+  const { f, range, otherRange, best, error, otherError } = problem
+  const bound = side < 0 ? range.low : range.high
+  if (best.value === bound) return null
+  let slope = problem.otherSlope
+  const fall = (value: number): number => {
+    let height: number
+    if (otherRange === null) height = f(value, 0)
+    else {
+      const along = ridge(
+        (other) => f(value, other),
+        best.other + slope * (value - best.value),
+        otherRange,
+        otherError,
+      )
+      height = along.value
+      if (Number.isFinite(height)) slope = (along.x - best.other) / (value - best.value)
     }
-    if (trial === bound) return { x: null, evaluations }
-    inside = trial
-    step = round < 3 ? 0.5 * errors[index] * (round + 1) : 2 * step
+    return Number.isNaN(height) ? Infinity : Math.sqrt(2 * Math.max(0, best.height - height))
   }
-  return { x: null, evaluations }
+  // Distances from the top, in units of the standard error, and the falls there.
+  const room = Math.abs(bound - best.value) / error
+  const valueAt = (distance: number): number =>
+    distance >= room ? bound : best.value + side * distance * error
+  const points: { d: number; r: number }[] = [{ d: 0, r: 0 }]
+  let inside = 0
+  let outside = Infinity
+  let d = Math.min(z, room)
+  for (let trial = 0; trial < MOST_TRIALS; trial++) {
+    const r = fall(valueAt(d))
+    if (r < z) {
+      if (d >= room) return null
+      inside = d
+    } else outside = d
+    if (Number.isFinite(r)) points.push({ d, r })
+    const next = interpolated(points, z)
+    if (Math.abs(r - z) < CLOSE) {
+      const sound = next > inside * 0.99 && next < (outside === Infinity ? 1.1 * d : 1.01 * outside)
+      return valueAt(Math.min(room, sound ? next : d))
+    }
+    if (outside === Infinity) {
+      // Not bracketed yet: go where the line leads, but at most four times as far.
+      d = Math.min(
+        room,
+        Math.min(4 * inside, Math.max(1.1 * inside, Number.isFinite(next) ? next : Infinity)),
+      )
+    } else {
+      const margin = 0.02 * (outside - inside)
+      // Bisection when interpolation points out of the bracket, and now and then for safety.
+      const good = next > inside + margin && next < outside - margin && trial % 5 !== 4
+      d = good ? next : 0.5 * (inside + outside)
+      if (outside - inside < 1e-9 * outside) return valueAt(outside)
+    }
+  }
+  return null
+}
+
+/** Distance at which r = z, from the two or three points whose r is nearest (inverse interpolation). */
+function interpolated(points: readonly { d: number; r: number }[], z: number): number {
+  const near = [...points].sort((a, b) => Math.abs(a.r - z) - Math.abs(b.r - z)).slice(0, 3)
+  if (near.length < 2) return Number.NaN
+  const [a, b, c] = near
+  if (a.r === b.r) return Number.NaN
+  const line = a.d + ((z - a.r) * (b.d - a.d)) / (b.r - a.r)
+  if (c === undefined || c.r === a.r || c.r === b.r) return line
+  const bend = ((c.d - a.d) / (c.r - a.r) - (b.d - a.d) / (b.r - a.r)) / (c.r - b.r)
+  const curve = line + (z - a.r) * (z - b.r) * bend
+  const lowest = Math.min(a.d, b.d, c.d)
+  return curve > lowest - Math.abs(line - lowest) ? curve : line
 }

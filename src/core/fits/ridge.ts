@@ -1,13 +1,15 @@
 import { minimise1d } from '../numeric/minimise.ts'
 import type { Range } from './climb.ts'
 
-/** A predicted gain in ln L below this is not worth another evaluation. */
-const LEAST_GAIN = 1e-6
+/** A predicted gain in ln L below this needs no check: the parabola is right to a small part of it. */
+const LEAST_GAIN = 3e-4
+/** A parabola that foretold the height this well needs no second one. */
+const TRUSTED = 2e-5
 const MOST_ROUNDS = 25
 
 /**
  * Maximum of a smooth function of one coordinate near a good start: parabolas through three points, clipped to the
- * range; Brent's method around the start where the function is not a dome.
+ * range; Brent's method around the start where the function is not a dome. Heights are right to about 1e-5.
  * @param error rough width of the dome
  */
 export function ridge(
@@ -27,28 +29,23 @@ export function ridge(
     // Newton's divided differences of the parabola through (x, left, right).
     const d1 = (fl - value) / (left - x)
     const d2 = ((fr - value) / (right - x) - d1) / (right - left)
-    const slope = d1 + d2 * (x - left)
+    const slope = d1 - d2 * (left - x)
     if (!(d2 < 0) || !Number.isFinite(slope)) return wide(f, x, value, range, error)
-    const step = -slope / (2 * d2)
-    const next = Math.min(
-      range.high,
-      Math.max(range.low, x + Math.max(-8 * error, Math.min(8 * error, step))),
-    )
+    const step = Math.max(-8 * error, Math.min(8 * error, -slope / (2 * d2)))
+    const next = Math.min(range.high, Math.max(range.low, x + step))
     const gain = slope * (next - x) + d2 * (next - x) ** 2
-    if (gain < LEAST_GAIN) return { x, value: value + Math.max(0, gain) }
+    if (gain < LEAST_GAIN) return { x: next, value: value + Math.max(0, gain) }
     const reached = f(next)
-    if (reached < value) {
+    if (!(reached >= value)) {
       h *= 0.3
-      if (h < 1e-4 * error) return { x, value }
+      if (h < 1e-4 * error) return wide(f, x, value, range, error)
       continue
     }
-    // A parabola that foretold the height to a part in ten thousand of the level needs no second look.
-    if (Math.abs(reached - value - gain) < 1e-3 * gain || reached - value < LEAST_GAIN) {
-      if (Math.abs(reached - value - gain) < 2e-5) return { x: next, value: reached }
-    }
+    const surprise = Math.abs(reached - value - gain)
     h = Math.max(0.02 * error, Math.min(0.2 * error, 0.3 * Math.abs(next - x)))
     x = next
     value = reached
+    if (surprise < TRUSTED) return { x, value }
   }
   return { x, value }
 }

@@ -1,8 +1,9 @@
 import { gaussLegendre } from '../numeric/gauss-legendre.ts'
+import { triangleRule } from './triangle-rule.ts'
 
 /**
- * Nodes for the mass of one observed duration: the integral of (1 - |x|) f(t_m + x Delta) over x in [-1, 1], with
- * t_m the centre of the kernel. Node n of dwell i has time `seconds[n]` and weight `weights[n]`, n in
+ * Nodes for the mass of one observed duration: the integral of (1 - |x|) f(t_m + x Delta) Delta over x in [-1, 1], with
+ * t_m the centre of the kernel. Node n of dwell i has time `seconds[n]` and weight `weights[n]` (s), n in
  * [first[i], first[i + 1]).
  */
 export interface TriangleNodes {
@@ -11,15 +12,20 @@ export interface TriangleNodes {
   readonly weights: Float64Array
 }
 
-/** Long durations need fewer points: the density is smooth over one bin there. */
-const RULES = [
-  { below: 8, halfPoints: 8 },
-  { below: 24, halfPoints: 4 },
+/**
+ * Points of the Gauss rule by the lower end of the kernel, in bins. The farther a kernel lies from t = 0, where power
+ * laws are singular, the smoother the density over it; relative error below 1e-9 for exponents up to 3 and for
+ * rates up to one per bin where dwells of that rate occur.
+ */
+const POINTS = [
+  { from: 1, points: 10 },
+  { from: 6, points: 5 },
+  { from: 21, points: 3 },
+  { from: 180, points: 2 },
 ] as const
-/** Exact to fifth order for the triangle: nodes 0 and -+sqrt(0.4). Relative error below 1e-9 from 24 bins on. */
-const THREE = { x: Math.sqrt(0.4), outer: 5 / 24, inner: 7 / 12 }
-/** From here on the centre alone is right to 2e-6. */
-const CENTRE_FROM = 512
+/** Kernels that reach below one bin, or below the shortest duration, are cut into panels of this many points. */
+const PANEL_POINTS = 10
+const PANEL_RATIO = 2
 
 /**
  * @param bins observed durations (may be fractional), each > 0
@@ -35,29 +41,35 @@ export function triangleNodes(
   const first = new Uint32Array(bins.length + 1)
   const seconds: number[] = []
   const weights: number[] = []
-  const half = (centre: number, from: number, to: number, points: number): void => {
-    // The part of [from, to] (in bins from the centre, on one side of it) that lies above the shortest duration.
-    const lowest = Math.max(from, shortestSeconds / binSeconds - centre)
-    if (lowest >= to) return
-    const rule = gaussLegendre(points)
-    for (let i = 0; i < points; i++) {
-      const x = lowest + 0.5 * (to - lowest) * (rule.nodes[i] + 1)
-      seconds.push((centre + x) * binSeconds)
-      weights.push(0.5 * (to - lowest) * rule.weights[i] * (1 - Math.abs(x)) * binSeconds)
+  const support = shortestSeconds / binSeconds
+  const panels = (centre: number, from: number, to: number): void => {
+    const { nodes, weights: shares } = gaussLegendre(PANEL_POINTS)
+    for (let low = from; low < to; ) {
+      const high = low * PANEL_RATIO < to ? low * PANEL_RATIO : to
+      const half = 0.5 * (high - low)
+      for (let i = 0; i < PANEL_POINTS; i++) {
+        const t = low + half * (nodes[i] + 1)
+        seconds.push(t * binSeconds)
+        weights.push(half * shares[i] * (1 - Math.abs(t - centre)) * binSeconds)
+      }
+      low = high
     }
   }
   for (let i = 0; i < bins.length; i++) {
     const centre = bins[i] - shiftBins
-    const rule = RULES.find(({ below }) => bins[i] < below)
-    if (rule !== undefined) {
-      half(centre, -1, 0, rule.halfPoints)
-      half(centre, 0, 1, rule.halfPoints)
-    } else if (bins[i] < CENTRE_FROM) {
-      seconds.push((centre - THREE.x) * binSeconds, centre * binSeconds, (centre + THREE.x) * binSeconds)
-      weights.push(THREE.outer * binSeconds, THREE.inner * binSeconds, THREE.outer * binSeconds)
+    const low = centre - 1
+    // The reference duration of a fit is the lower end of the shortest kernel, up to rounding.
+    if (low < 1 - 1e-9 || low < support - 1e-9) {
+      panels(centre, Math.max(low, support), centre)
+      panels(centre, Math.max(centre, support), centre + 1)
     } else {
-      seconds.push(centre * binSeconds)
-      weights.push(binSeconds)
+      let points: number = POINTS[0].points
+      for (const step of POINTS) if (low >= step.from) points = step.points
+      const rule = triangleRule(points)
+      for (let k = 0; k < points; k++) {
+        seconds.push((centre + rule.nodes[k]) * binSeconds)
+        weights.push(rule.weights[k] * binSeconds)
+      }
     }
     first[i + 1] = seconds.length
   }
