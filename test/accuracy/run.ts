@@ -8,7 +8,7 @@ import { summaryLines } from './summary.ts'
  * Accuracy of the default recipe on simulated records:
  *
  *   npm run accuracy -- --records 200 [--scenario NAME] [--stage counts|occupancy|dwells]
- *                            [--threshold recipe|half] [--workers 2] [--json]
+ *                            [--threshold recipe|half|clean-half] [--workers 2] [--json]
  *
  * Per scenario: mean bias of each parameter with its standard error; share of 95 % intervals that hold the truth;
  * standard deviation over records relative to the Cramér-Rao bound for the dwells used; on fraction; failures. Fits use

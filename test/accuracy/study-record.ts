@@ -8,6 +8,7 @@ import { fitLaw } from '../../src/core/fits/fit-law.ts'
 import { shortestFitted } from '../../src/core/fits/shortest-fitted.ts'
 import { lawNamed } from '../../src/core/laws/all-laws.ts'
 import { benchNumbers } from '../../src/core/pipeline/bench-numbers.ts'
+import type { ThresholdProduct } from '../../src/core/pipeline/analysis-products.ts'
 import { prepareTrace } from '../../src/core/pipeline/prepare-trace.ts'
 import { rowOf, studyThresholds, thresholdOf } from '../../src/core/pipeline/study-thresholds.ts'
 import { DEFAULT_RECIPE } from '../../src/core/recipe/default-recipe.ts'
@@ -66,10 +67,15 @@ export interface RecordOutcome {
   readonly flags: readonly string[] | null
 }
 
+const CLEAN_FALSE_BINS = 0.05
+
 const tables = new Map<string, InformationTable>()
 
-/** Which threshold: that of the recipe's rule, or half-way between the two levels found. */
-export const THRESHOLDS = ['recipe', 'half'] as const
+/**
+ * Which threshold: that of the recipe's rule; half-way between the two levels found, where rounding of dwells is even;
+ * or as near to half-way as keeps the false bins of either kind to be expected in the whole record below 0.05.
+ */
+export const THRESHOLDS = ['recipe', 'half', 'clean-half'] as const
 export type ThresholdChoice = (typeof THRESHOLDS)[number]
 
 export interface StudyChoices {
@@ -88,9 +94,7 @@ export function studyRecord(scenario: Scenario, choices: StudyChoices, seed: str
   const recipe: Recipe = { ...DEFAULT_RECIPE, bin: { seconds: binSeconds } }
   const prepared = prepareTrace({ record: trace, gate }, recipe)
   const product = studyThresholds(prepared, recipe)
-  const { offCounts, onCounts } = prepared.levelled
-  const wanted = choices.threshold === 'half' ? Math.ceil((offCounts + onCounts) / 2) : product.byRule.counts
-  const row = rowOf(product.table, wanted)
+  const row = rowChosen(product, prepared.levelled, choices.threshold)
   const found = thresholdOf(product.table, row)
   const errors = {
     falseOnPerBin: product.falseOnPerBin[row],
@@ -125,6 +129,19 @@ export function studyRecord(scenario: Scenario, choices: StudyChoices, seed: str
     trueLongestOnSeconds: longestTrue(truth),
     flags: choices.flags ? benchNumbers(prepared, product, recipe, found).flags.map(({ key }) => key) : null,
   }
+}
+
+function rowChosen(product: ThresholdProduct, levelled: LevelledTrace, choice: ThresholdChoice): number {
+  const byRule = rowOf(product.table, product.byRule.counts)
+  if (choice === 'recipe') return byRule
+  const half = rowOf(product.table, Math.ceil((levelled.offCounts + levelled.onCounts) / 2))
+  if (choice === 'half') return half
+  const bins = levelled.values.length
+  const step = half < byRule ? 1 : -1
+  for (let row = half; row !== byRule; row += step)
+    if (bins * Math.max(product.falseOnPerBin[row], product.falseOffPerBin[row]) < CLEAN_FALSE_BINS)
+      return row
+  return byRule
 }
 
 function stateOutcome(
