@@ -4,7 +4,7 @@ import { binnedDensity, neighbourDensity } from '../../../src/core/dwells/densit
 import { seededRandom } from '../../../src/core/numeric/seeded-random.ts'
 import { sampleOf } from './sample-of.ts'
 
-const durations = fc.array(fc.integer({ min: 1, max: 3000 }), { minLength: 1, maxLength: 60 })
+const durations = fc.array(fc.integer({ min: 1, max: 3000 }), { minLength: 1, maxLength: 60, size: 'max' })
 
 describe('binnedDensity', () => {
   it('holds every complete dwell once and integrates to one', () => {

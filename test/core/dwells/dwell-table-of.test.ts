@@ -6,11 +6,11 @@ import { statesAt } from '../../../src/core/states/states-at.ts'
 import type { TableGroup } from '../../../src/core/states/threshold-table.ts'
 import { levelledOf, telegraphValues } from '../states/plain-tally.ts'
 
-const bits = fc.array(fc.integer({ min: 0, max: 1 }), { maxLength: 150 })
+const bits = fc.array(fc.integer({ min: 0, max: 1 }), { maxLength: 150, size: 'max' })
 const record = fc.record({
   values: bits,
-  marks: fc.array(fc.boolean(), { maxLength: 150 }),
-  codes: fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 1, maxLength: 40 }),
+  marks: fc.array(fc.boolean(), { maxLength: 150, size: 'max' }),
+  codes: fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 1, maxLength: 40, size: 'max' }),
   gate: fc.constantFrom<TableGroup>('all', 'reference', 'driven', 'sham'),
 })
 

@@ -4,7 +4,7 @@ import { hazardTimesAge } from '../../../src/core/dwells/hazard.ts'
 import { seededRandom } from '../../../src/core/numeric/seeded-random.ts'
 import { sampleOf } from './sample-of.ts'
 
-const durations = fc.array(fc.integer({ min: 1, max: 900 }), { minLength: 1, maxLength: 50 })
+const durations = fc.array(fc.integer({ min: 1, max: 900 }), { minLength: 1, maxLength: 50, size: 'max' })
 
 describe('hazardTimesAge', () => {
   it('is ends over time at risk: sums back to all ends and all time', () => {

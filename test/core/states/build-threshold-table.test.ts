@@ -56,12 +56,12 @@ interface Case {
 
 /** Short records full of ties, gaps, short windows and guard bins. */
 const cases = fc.record<Case & { gapAt: number[]; codes: number[] }>({
-  values: fc.array(fc.integer({ min: 0, max: 12 }), { minLength: 1, maxLength: 120 }),
+  values: fc.array(fc.integer({ min: 0, max: 12 }), { minLength: 1, maxLength: 120, size: 'max' }),
   offset: fc.integer({ min: -20, max: 20 }),
   gaps: fc.boolean(),
-  gapAt: fc.array(fc.nat(119), { maxLength: 8 }),
+  gapAt: fc.array(fc.nat(119), { maxLength: 8, size: 'max' }),
   gated: fc.boolean(),
-  codes: fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 1, maxLength: 30 }),
+  codes: fc.array(fc.integer({ min: 0, max: 3 }), { minLength: 1, maxLength: 30, size: 'max' }),
   step: fc.integer({ min: 1, max: 3 }),
   firstBelow: fc.integer({ min: -3, max: 3 }),
 })
@@ -147,16 +147,19 @@ describe('buildThresholdTable', () => {
 
   it('counts the same complete dwells when time runs backwards', () => {
     fc.assert(
-      fc.property(fc.array(fc.integer({ min: 0, max: 9 }), { minLength: 1, maxLength: 200 }), (values) => {
-        const range = { firstThreshold: 0, step: 1, rows: 11 }
-        const there = buildThresholdTable(levelledOf(values), null, range)
-        const back = buildThresholdTable(levelledOf(values.toReversed()), null, range)
-        for (const state of [0, 1] as const) {
-          expect(back.blocks[0][state].completeCount).toEqual(there.blocks[0][state].completeCount)
-          expect(back.blocks[0][state].stateBins).toEqual(there.blocks[0][state].stateBins)
-          expect(back.blocks[0][state].longestBins).toEqual(there.blocks[0][state].longestBins)
-        }
-      }),
+      fc.property(
+        fc.array(fc.integer({ min: 0, max: 9 }), { minLength: 1, maxLength: 200, size: 'max' }),
+        (values) => {
+          const range = { firstThreshold: 0, step: 1, rows: 11 }
+          const there = buildThresholdTable(levelledOf(values), null, range)
+          const back = buildThresholdTable(levelledOf(values.toReversed()), null, range)
+          for (const state of [0, 1] as const) {
+            expect(back.blocks[0][state].completeCount).toEqual(there.blocks[0][state].completeCount)
+            expect(back.blocks[0][state].stateBins).toEqual(there.blocks[0][state].stateBins)
+            expect(back.blocks[0][state].longestBins).toEqual(there.blocks[0][state].longestBins)
+          }
+        },
+      ),
       { seed: 3, numRuns: 100 },
     )
   })

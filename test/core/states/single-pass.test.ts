@@ -30,12 +30,13 @@ describe('singlePassTally', () => {
         fc.array(fc.oneof(fc.integer({ min: 0, max: 9 }), fc.constantFrom(0x7fff, 0x8000, 0xffff)), {
           minLength: 1,
           maxLength: 300,
+          size: 'max',
         }),
         fc.constantFrom(0, 1, 5, 9, 10, 0x7fff, 0x8000, 0x8001, 0xffff, 0x10000),
         fc.boolean(),
         fc.boolean(),
         fc.nat(3),
-        fc.array(fc.nat(299), { maxLength: 4 }),
+        fc.array(fc.nat(299), { maxLength: 4, size: 'max' }),
         (values, threshold, wide, small, shift, gapAt) => {
           const kept = small ? values.map((v) => v % 10) : values
           const Kind = wide ? Uint32Array : Uint16Array

@@ -169,13 +169,14 @@ describe('spuriousSafeBins', () => {
     for (let m = safe; m <= 64; m++) expect(spurious[m - 1]).toBeLessThan(0.05 * Math.max(1, observed[m - 1]))
   })
 
-  it('is one bin without errors and past the grid when everything is noise', () => {
-    expect(spuriousSafeBins(table, 0, 0, 1, { falseOnPerBin: 0, falseOffPerBin: 0 })).toBe(1)
-    const noise = misread(3000, 3000, 0.999, 0, 'all noise')
-    const { edges } = noise.grid
-    expect(spuriousSafeBins(noise, 0, 0, 1, { falseOnPerBin: 0.999, falseOffPerBin: 0 })).toBeLessThanOrEqual(
-      edges[edges.length - 1],
-    )
+  it('is one bin without errors and grows with the error rate', () => {
+    const at = (p: number): number =>
+      spuriousSafeBins(table, 0, 0, 1, { falseOnPerBin: p, falseOffPerBin: 0 })
+    expect(at(0)).toBe(1)
+    const safe = [1e-6, 1e-3, 0.05, 0.3].map(at)
+    expect(safe).toEqual(safe.toSorted((a, b) => a - b))
+    expect(safe[0]).toBe(1)
+    expect(safe[3]).toBeGreaterThan(6)
   })
 })
 

@@ -15,8 +15,8 @@ describe('statesAt', () => {
   it('covers the record exactly, bin by bin, with runs that differ from their neighbours', () => {
     fc.assert(
       fc.property(
-        fc.array(fc.integer({ min: 0, max: 6 }), { maxLength: 200 }),
-        fc.array(fc.boolean(), { maxLength: 200 }),
+        fc.array(fc.integer({ min: 0, max: 6 }), { maxLength: 200, size: 'max' }),
+        fc.array(fc.boolean(), { maxLength: 200, size: 'max' }),
         fc.integer({ min: -5, max: 5 }),
         fc.integer({ min: -6, max: 14 }),
         (values, marks, offset, threshold) => {
