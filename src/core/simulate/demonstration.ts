@@ -19,14 +19,14 @@ const FIELD: GateModel = {
   offsetSeconds: 0,
   duty: 0.5,
   guardSeconds: 0.05,
-  leakCps: 60,
+  leakCps: 50,
   clockErrorSeconds: 0,
 }
 
 /** The field charges the coverslip: the background wanders once per field period and settles over the record. */
 const FIELD_DRIFT: readonly DriftTerm[] = [
-  { kind: 'exponential', amplitude: 150, tauSeconds: 120 },
-  { kind: 'sinusoid', amplitude: 40, periodSeconds: 40, zeroSeconds: 20 },
+  { kind: 'exponential', amplitude: 80, tauSeconds: 120 },
+  { kind: 'sinusoid', amplitude: 25, periodSeconds: 40, zeroSeconds: 20 },
 ]
 
 const COUNTER: DetectorModel = {
@@ -79,7 +79,7 @@ export const DEMONSTRATION: readonly DemonstrationEmitter[] = [
     name: 'coverslip-A emitter 1 textbook',
     title: 'Two clear levels; power-law off-times, on-times cut off near 5 s.',
     model: nanocrystal(400, [1000, 10_000], cutoffPower(1.5, 5), power(1.6)),
-    seed: 'coverslip-A 1 0',
+    seed: 'coverslip-A 1 50',
   },
   {
     name: 'coverslip-A emitter 2 dim',
@@ -103,10 +103,10 @@ export const DEMONSTRATION: readonly DemonstrationEmitter[] = [
     name: 'coverslip-A emitter 4 bleaches',
     title: 'Goes dark for good half way: the last dark time is not an off-time.',
     model: {
-      ...nanocrystal(400, [1000, 10_000], cutoffPower(1.5, 5), power(1.6)),
+      ...nanocrystal(400, [1000, 10_000], cutoffPower(1.5, 5), cutoffPower(1.6, 20)),
       bleachSeconds: 200,
     },
-    seed: 'coverslip-A 4 36',
+    seed: 'coverslip-A 4 6',
   },
   {
     name: 'coverslip-A emitter 5 grey level',
