@@ -176,6 +176,8 @@ export function inverseGammaP(a: number, p: number): number {
   let u = startOfInverse(a, p, upper, target)
   for (let round = 0; round < 200; round++) {
     const x = Math.exp(u)
+    // Below the smallest double.
+    if (x === 0) return 0
     const lnTail = upper ? lnGammaQ(a, x) : lnGammaP(a, x)
     const slope = a * Math.exp(lnPoissonTerm(a, x) - lnTail)
     const step = (upper ? lnTail - target : target - lnTail) / slope

@@ -19,8 +19,9 @@ export function normalCdf(z: number): number {
   return 0.5 * erfc(-z * Math.SQRT1_2)
 }
 
-/** ln P(Z > z) of the standard normal distribution. */
+/** ln P(Z > z) of the standard normal distribution, relative accuracy of the logarithm kept on both sides. */
 export function lnNormalUpperTail(z: number): number {
+  if (z < 0) return Math.log1p(-Math.exp(lnNormalUpperTail(-z)))
   return lnErfc(z * Math.SQRT1_2) - Math.LN2
 }
 

@@ -1,14 +1,18 @@
-/** Rounded so that the uncertainty keeps two digits; `digits` when there is none. */
+/**
+ * A number as people write it: its last digit is that of the uncertainty, or `digits` of them when there is none; powers of ten only from 10^6 up and below 10^-5. NaN gives `not available`.
+ */
 export function roundTo(value: number, uncertainty: number | null, digits = 3): string {
+  if (Number.isNaN(value)) return 'not available'
   if (!Number.isFinite(value)) return value > 0 ? '∞' : '−∞'
   if (value === 0) return '0'
   const magnitude = Math.floor(Math.log10(Math.abs(value)))
   const place =
     uncertainty !== null && uncertainty > 0 && Number.isFinite(uncertainty)
-      ? Math.floor(Math.log10(uncertainty)) - 1
+      ? lastPlace(uncertainty)
       : magnitude - digits + 1
   const decimals = Math.max(0, Math.min(12, -place))
-  if (magnitude >= 6 || magnitude < -5) return minus(value.toExponential(Math.max(1, digits - 1)))
+  if (magnitude >= 6 || magnitude < -5)
+    return minus(value.toExponential(Math.max(1, digits - 1)).replace('e+', 'e'))
   return minus(
     place > 0
       ? String(Number(value.toPrecision(Math.max(1, magnitude - place + 1))))
@@ -16,6 +20,17 @@ export function roundTo(value: number, uncertainty: number | null, digits = 3): 
   )
 }
 
+/**
+ * Power of ten of the last digit worth writing: two digits of the uncertainty when they start with 10 to 35, one from
+ * 36 to 94, and from 95 on two of the rounded 1.0 (Particle Data Group, Review of Particle Physics, section 5.3).
+ */
+function lastPlace(uncertainty: number): number {
+  const power = Math.floor(Math.log10(uncertainty))
+  const leading = uncertainty / 10 ** power
+  return leading < 3.55 ? power - 1 : power
+}
+
+/** A true minus sign, as wide as the plus. */
 function minus(text: string): string {
   return text.replace('-', '−')
 }
@@ -36,7 +51,10 @@ export function siDuration(seconds: number | null, digits = 3): string {
   return `${minus(String(Number((seconds / scale.size).toPrecision(digits))))} ${scale.unit}`
 }
 
-/** Estimate and interval as text: `1.52 [1.44, 1.61]`, `> 3.1 s`, `not available`. */
+/**
+ * Estimate and interval as text: `1.52` and `[1.44, 1.61]`; a bound as `> 3.1 s`; `not available` when all are null.
+ * Both are rounded by the standard error that the interval would have at 95 %, a quarter of its width.
+ */
 export function formatEstimate(value: {
   readonly estimate: number | null
   readonly low: number | null
