@@ -68,7 +68,8 @@ export function canvasSurface(pen: Pen): Surface {
     },
     rectangles(boxes, colour) {
       pen.fillStyle = colour
-      for (let i = 0; i + 3 < boxes.length; i += 4) pen.fillRect(boxes[i], boxes[i + 1], boxes[i + 2], boxes[i + 3])
+      for (let i = 0; i + 3 < boxes.length; i += 4)
+        pen.fillRect(boxes[i], boxes[i + 1], boxes[i + 2], boxes[i + 3])
     },
     discs(points, radius, fill, edge, width) {
       pen.fillStyle = fill

@@ -65,8 +65,16 @@ export function drawMark(mark: Mark, context: MarkContext): void {
         if (!Number.isFinite(x) || !Number.isFinite(y)) continue
         const colour = palette[mark.role]
         const tip = y + length
-        surface.polyline([x - 3 * hairline, y, x + 3 * hairline, y, Number.NaN, Number.NaN, x, y, x, tip], colour, hairline, [])
-        surface.polygon([x, tip + 2 * hairline, x - 2 * hairline, tip - hairline, x + 2 * hairline, tip - hairline], colour)
+        surface.polyline(
+          [x - 3 * hairline, y, x + 3 * hairline, y, Number.NaN, Number.NaN, x, y, x, tip],
+          colour,
+          hairline,
+          [],
+        )
+        surface.polygon(
+          [x, tip + 2 * hairline, x - 2 * hairline, tip - hairline, x + 2 * hairline, tip - hairline],
+          colour,
+        )
       }
       break
     }
@@ -80,7 +88,9 @@ export function drawMark(mark: Mark, context: MarkContext): void {
         const right = mark.across === 'x' && along > frame.x + 0.7 * frame.width
         surface.text(
           mark.label,
-          mark.across === 'x' ? along + (right ? -1 : 1) * 3 * hairline : frame.x + frame.width - 3 * hairline,
+          mark.across === 'x'
+            ? along + (right ? -1 : 1) * 3 * hairline
+            : frame.x + frame.width - 3 * hairline,
           mark.across === 'x' ? frame.y + context.fontSize : along - 3 * hairline,
           {
             size: context.fontSize * 0.92,
@@ -126,10 +136,18 @@ function stroke(
   palette: Palette,
   hairline: number,
 ): void {
-  surface.polyline(points, palette[role], weight * hairline, (dash ?? []).map((length) => length * hairline))
+  surface.polyline(
+    points,
+    palette[role],
+    weight * hairline,
+    (dash ?? []).map((length) => length * hairline),
+  )
 }
 
-function drawPoints(mark: Extract<Mark, { kind: 'points' }>, { surface, palette, frame, at, hairline }: MarkContext): void {
+function drawPoints(
+  mark: Extract<Mark, { kind: 'points' }>,
+  { surface, palette, frame, at, hairline }: MarkContext,
+): void {
   const places: number[] = []
   const bars: number[] = []
   const bottom = frame.y + frame.height
@@ -139,7 +157,14 @@ function drawPoints(mark: Extract<Mark, { kind: 'points' }>, { surface, palette,
     if (!Number.isFinite(x) || !Number.isFinite(y)) continue
     places.push(x, y)
     if (mark.lows !== null && mark.highs !== null) {
-      bars.push(x, Math.min(bottom, finiteOr(at.y(mark.lows[i]), bottom)), x, at.y(mark.highs[i]), Number.NaN, Number.NaN)
+      bars.push(
+        x,
+        Math.min(bottom, finiteOr(at.y(mark.lows[i]), bottom)),
+        x,
+        at.y(mark.highs[i]),
+        Number.NaN,
+        Number.NaN,
+      )
     }
   }
   const colour = palette[mark.role]
@@ -148,7 +173,10 @@ function drawPoints(mark: Extract<Mark, { kind: 'points' }>, { surface, palette,
 }
 
 /** One thin rectangle per column from its lowest to its highest value: as fast as a canvas gets. */
-function drawEnvelope(mark: Extract<Mark, { kind: 'envelope' }>, { surface, palette, frame, at, hairline }: MarkContext): void {
+function drawEnvelope(
+  mark: Extract<Mark, { kind: 'envelope' }>,
+  { surface, palette, frame, at, hairline }: MarkContext,
+): void {
   const { lows, highs, columns } = mark
   const width = frame.width / columns
   const rectangles = new Float64Array(4 * columns)
@@ -183,7 +211,14 @@ function drawStates(mark: Extract<Mark, { kind: 'states' }>, { surface, palette,
   surface.rectangles(boxes[2], palette['on-soft'])
 }
 
-function hatch(surface: Surface, x0: number, x1: number, frame: Frame, colour: string, hairline: number): void {
+function hatch(
+  surface: Surface,
+  x0: number,
+  x1: number,
+  frame: Frame,
+  colour: string,
+  hairline: number,
+): void {
   const spacing = 7 * hairline
   const lines: number[] = []
   const bottom = frame.y + frame.height

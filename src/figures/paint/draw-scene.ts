@@ -45,7 +45,13 @@ function letterIndent(panel: Panel, fontSize: number): number {
   return panel.y.side === 'left' ? 3.2 * fontSize : 0
 }
 
-function drawAxis(axis: Axis, frame: Frame, { hairline, fontSize }: Scene, palette: Palette, surface: Surface): void {
+function drawAxis(
+  axis: Axis,
+  frame: Frame,
+  { hairline, fontSize }: Scene,
+  palette: Palette,
+  surface: Surface,
+): void {
   if (axis.side === 'none') return
   const horizontal = axis.side === 'bottom' || axis.side === 'top'
   const length = horizontal ? frame.width : frame.height
@@ -85,7 +91,12 @@ function drawAxis(axis: Axis, frame: Frame, { hairline, fontSize }: Scene, palet
     surface.text(axis.label, middle, y, { size: fontSize, colour: palette.ink, anchor: 'middle' })
   } else {
     const x = edge + sign * (1.35 + 0.56 * Math.max(2, numbers)) * fontSize
-    surface.text(axis.label, x, middle, { size: fontSize, colour: palette.ink, anchor: 'middle', upright: true })
+    surface.text(axis.label, x, middle, {
+      size: fontSize,
+      colour: palette.ink,
+      anchor: 'middle',
+      upright: true,
+    })
   }
 }
 

@@ -23,7 +23,12 @@ function paint(attribute: 'fill' | 'stroke', colour: string): string {
  * A scene as SVG text: text stays text, sizes are physical for `pt` scenes, ids are numbered from the start of the figure
  * so that equal scenes give equal files. Everything that came from a user is escaped.
  */
-export function sceneToSvg(scene: Scene, palette: Palette, title: string, metadata: FigureMetadata | null): string {
+export function sceneToSvg(
+  scene: Scene,
+  palette: Palette,
+  title: string,
+  metadata: FigureMetadata | null,
+): string {
   const parts: string[] = []
   let clips = 0
   const surface: Surface = {

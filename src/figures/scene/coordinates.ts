@@ -47,7 +47,8 @@ const SUPERSCRIPTS = '⁰¹²³⁴⁵⁶⁷⁸⁹'
 
 /** 10 to a whole power as people print it. */
 export function powerOfTen(exponent: number): string {
-  if (exponent >= -2 && exponent <= 3) return exponent < 0 ? (10 ** exponent).toFixed(-exponent) : String(10 ** exponent)
+  if (exponent >= -2 && exponent <= 3)
+    return exponent < 0 ? (10 ** exponent).toFixed(-exponent) : String(10 ** exponent)
   const digits = String(Math.abs(exponent))
     .split('')
     .map((digit) => SUPERSCRIPTS[Number(digit)])
@@ -80,7 +81,10 @@ export function ticksOf(axis: Axis, length: number, fontSize: number): Tick[] {
         out.push({ value, label: labelled ? powerOfTen(decade) : '' })
       } else if (room > 3.5) {
         // With less than a decade in view the decades alone would label nothing.
-        out.push({ value, label: decades < 1 && (digit === 2 || digit === 5) ? String(Number(value.toPrecision(2))) : '' })
+        out.push({
+          value,
+          label: decades < 1 && (digit === 2 || digit === 5) ? String(Number(value.toPrecision(2))) : '',
+        })
       }
     }
   }

@@ -16,9 +16,16 @@ export interface DwellPanelInput {
   /** Upper limits where nothing was seen. */
   readonly limits: { readonly seconds: ArrayLike<number>; readonly highs: ArrayLike<number> }
   /** Steps with band (survival). */
-  readonly steps: (DwellPoints & { readonly lows: ArrayLike<number>; readonly highs: ArrayLike<number> }) | null
+  readonly steps:
+    | (DwellPoints & { readonly lows: ArrayLike<number>; readonly highs: ArrayLike<number> })
+    | null
   /** Fitted law, and from which duration on it was fitted, s. */
-  readonly curve: { readonly seconds: ArrayLike<number>; readonly values: ArrayLike<number>; readonly fittedFrom: number; readonly fittedTo: number } | null
+  readonly curve: {
+    readonly seconds: ArrayLike<number>
+    readonly values: ArrayLike<number>
+    readonly fittedFrom: number
+    readonly fittedTo: number
+  } | null
   /** Predicted spurious and split dwells as a density per stretch [from, to, value], s and 1/s. */
   readonly spurious: ArrayLike<number>
   readonly split: ArrayLike<number>
@@ -62,11 +69,29 @@ export function dwellPanel(input: DwellPanelInput): Panel {
     })
   }
   if (input.shortestSeconds !== null) {
-    marks.push({ kind: 'rule', across: 'x', at: input.shortestSeconds, stroke: { role: 'soft', weight: 1, dash: [4, 2] } })
+    marks.push({
+      kind: 'rule',
+      across: 'x',
+      at: input.shortestSeconds,
+      stroke: { role: 'soft', weight: 1, dash: [4, 2] },
+    })
   }
   if (steps !== null) {
-    marks.push({ kind: 'area', xs: steps.seconds, lows: steps.lows, highs: steps.highs, fill: soft, steps: true })
-    marks.push({ kind: 'line', xs: steps.seconds, ys: steps.values, stroke: { role: state, weight: 1.6 }, steps: true })
+    marks.push({
+      kind: 'area',
+      xs: steps.seconds,
+      lows: steps.lows,
+      highs: steps.highs,
+      fill: soft,
+      steps: true,
+    })
+    marks.push({
+      kind: 'line',
+      xs: steps.seconds,
+      ys: steps.values,
+      stroke: { role: state, weight: 1.6 },
+      steps: true,
+    })
     marks.push({
       kind: 'points',
       xs: input.cut,
@@ -79,7 +104,12 @@ export function dwellPanel(input: DwellPanelInput): Panel {
     })
   }
   marks.push(...curveMarks(curve))
-  marks.push({ kind: 'limits', xs: input.limits.seconds, highs: input.limits.highs, role: soft === 'on-soft' ? 'on' : 'off' })
+  marks.push({
+    kind: 'limits',
+    xs: input.limits.seconds,
+    highs: input.limits.highs,
+    role: soft === 'on-soft' ? 'on' : 'off',
+  })
   marks.push({
     kind: 'points',
     xs: input.points.seconds,

@@ -31,12 +31,16 @@ export function extractMetadata(svg: string): MetadataFound {
   const to = svg.indexOf(CLOSE, from)
   if (from < 0 || to < 0) return { ok: false, reason: 'This SVG carries no Heliograph recipe.' }
   const text = svg.slice(from + OPEN.length, to)
-  if (text.length > LARGEST_CHARACTERS) return { ok: false, reason: 'The recipe inside this SVG is too large to be one.' }
+  if (text.length > LARGEST_CHARACTERS)
+    return { ok: false, reason: 'The recipe inside this SVG is too large to be one.' }
   let value: unknown
   try {
     value = JSON.parse(unescapeXml(text))
   } catch {
-    return { ok: false, reason: 'The recipe inside this SVG is damaged (not JSON); the figure may have been edited.' }
+    return {
+      ok: false,
+      reason: 'The recipe inside this SVG is damaged (not JSON); the figure may have been edited.',
+    }
   }
   const one = value as Partial<FigureMetadata> | null
   if (

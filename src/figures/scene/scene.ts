@@ -53,8 +53,21 @@ export interface Stroke {
 }
 
 export type Mark =
-  | { readonly kind: 'line'; readonly xs: ArrayLike<number>; readonly ys: ArrayLike<number>; readonly stroke: Stroke; readonly steps?: boolean }
-  | { readonly kind: 'area'; readonly xs: ArrayLike<number>; readonly lows: ArrayLike<number>; readonly highs: ArrayLike<number>; readonly fill: Role; readonly steps?: boolean }
+  | {
+      readonly kind: 'line'
+      readonly xs: ArrayLike<number>
+      readonly ys: ArrayLike<number>
+      readonly stroke: Stroke
+      readonly steps?: boolean
+    }
+  | {
+      readonly kind: 'area'
+      readonly xs: ArrayLike<number>
+      readonly lows: ArrayLike<number>
+      readonly highs: ArrayLike<number>
+      readonly fill: Role
+      readonly steps?: boolean
+    }
   /** Rectangles [x0, x1, y0, y1] one after the other. */
   | { readonly kind: 'boxes'; readonly boxes: ArrayLike<number>; readonly fill: Role }
   | {
@@ -70,13 +83,41 @@ export type Mark =
       readonly radius: number
     }
   /** Upper limits: a bar from the limit down with an arrow head. */
-  | { readonly kind: 'limits'; readonly xs: ArrayLike<number>; readonly highs: ArrayLike<number>; readonly role: Role }
-  | { readonly kind: 'rule'; readonly across: 'x' | 'y'; readonly at: number; readonly stroke: Stroke; readonly label?: string }
-  | { readonly kind: 'span'; readonly from: number; readonly to: number; readonly fill: Role; readonly hatch?: boolean }
+  | {
+      readonly kind: 'limits'
+      readonly xs: ArrayLike<number>
+      readonly highs: ArrayLike<number>
+      readonly role: Role
+    }
+  | {
+      readonly kind: 'rule'
+      readonly across: 'x' | 'y'
+      readonly at: number
+      readonly stroke: Stroke
+      readonly label?: string
+    }
+  | {
+      readonly kind: 'span'
+      readonly from: number
+      readonly to: number
+      readonly fill: Role
+      readonly hatch?: boolean
+    }
   /** Lowest and highest value per column, columns evenly over the frame's width. */
-  | { readonly kind: 'envelope'; readonly lows: Float32Array; readonly highs: Float32Array; readonly columns: number; readonly role: Role }
+  | {
+      readonly kind: 'envelope'
+      readonly lows: Float32Array
+      readonly highs: Float32Array
+      readonly columns: number
+      readonly role: Role
+    }
   /** State per column of the frame's width: 0 off, 1 on, 2 both, 255 gap; drawn as a strip at the bottom. */
-  | { readonly kind: 'states'; readonly states: Uint8Array; readonly columns: number; readonly thickness: number }
+  | {
+      readonly kind: 'states'
+      readonly states: Uint8Array
+      readonly columns: number
+      readonly thickness: number
+    }
   | {
       readonly kind: 'text'
       /** Share of the frame, 0..1 from left and from top. */

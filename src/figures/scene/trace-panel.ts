@@ -32,7 +32,9 @@ export function tracePanel(input: TracePanelInput): Panel {
     ...input.driven.map(([from, to]): Mark => ({ kind: 'span', from, to, fill: 'driven' })),
     ...input.excluded.map(([from, to]): Mark => ({ kind: 'span', from, to, fill: 'guard' })),
     { kind: 'envelope', lows: input.lows, highs: input.highs, columns: input.columns, role: 'trace' },
-    ...input.unsupported.map(([from, to]): Mark => ({ kind: 'span', from, to, fill: 'unsupported', hatch: true })),
+    ...input.unsupported.map(
+      ([from, to]): Mark => ({ kind: 'span', from, to, fill: 'unsupported', hatch: true }),
+    ),
   ]
   if (input.baseline !== null) {
     const { seconds, counts, low, high } = input.baseline

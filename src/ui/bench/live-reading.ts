@@ -3,7 +3,7 @@ import type { Estimate, Fit } from '../../core/fits/fit.ts'
 import { lawNamed } from '../../core/laws/all-laws.ts'
 import { formatEstimate, roundTo, siDuration } from '../../core/numeric/units.ts'
 import type { RowFits, StateFits, ThresholdProduct } from '../../core/pipeline/analysis-products.ts'
-import type { BenchNumbers } from '../../core/pipeline/bench-numbers.ts'
+import type { BenchNumbers } from '../../core/pipeline/emitter-numbers.ts'
 import { rowOf, thresholdOf } from '../../core/pipeline/study-thresholds.ts'
 import type { LevelledTrace } from '../../core/states/levels.ts'
 
@@ -21,7 +21,11 @@ export interface StateReading {
   readonly title: string
   readonly lines: readonly ReadingLine[]
   /** Law weights in the order of the recipe; null where not fitted yet. */
-  readonly weights: readonly { readonly label: string; readonly weight: number | null; readonly shown: boolean }[]
+  readonly weights: readonly {
+    readonly label: string
+    readonly weight: number | null
+    readonly shown: boolean
+  }[]
 }
 
 /** Everything the reading column says at one threshold. Built by look-up: cost bounded by the table's columns. */
@@ -63,13 +67,19 @@ export function liveReading(
   const p1 = product.falseOffPerBin[row]
   const { binSeconds } = levelled
   const kcps = (counts: number): string => `${roundTo(counts / binSeconds / 1000, null, 3)} kcps`
-  const signal = (levelled.onCounts - levelled.offCounts) || Number.NaN
+  const signal = levelled.onCounts - levelled.offCounts || Number.NaN
   const share = (threshold - levelled.offCounts) / signal
-  const estimate = onFractionOfRow(product.table, product.group, row, { falseOnPerBin: p0, falseOffPerBin: p1 })
+  const estimate = onFractionOfRow(
+    product.table,
+    row,
+    { falseOnPerBin: p0, falseOffPerBin: p1 },
+    product.group,
+  )
   const onFraction: Estimate = exact?.onFraction ?? { estimate, low: null, high: null, unit: '' }
   const fraction = formatEstimate(onFraction)
   const bins = product.table.usableBins
-  const spurious = p0 * product.table.blocks[0][0].stateBins[row] + p1 * product.table.blocks[0][1].stateBins[row]
+  const spurious =
+    p0 * product.table.blocks[0][0].stateBins[row] + p1 * product.table.blocks[0][1].stateBins[row]
 
   return {
     general: [
@@ -95,10 +105,22 @@ export function liveReading(
         'errors',
         spurious > 20 ? 'Many bins are miscalled by shot noise: widen the bin or move the threshold.' : null,
       ),
-      line('on-fraction', 'On fraction', fraction.text, fraction.interval || (exact === null ? WAITING : ''), 'on-fraction'),
+      line(
+        'on-fraction',
+        'On fraction',
+        fraction.text,
+        fraction.interval || (exact === null ? WAITING : ''),
+        'on-fraction',
+      ),
     ],
     states: [0, 1].map((state) =>
-      stateReading(state as 0 | 1, product, row, exact?.states[state].fits ?? fits?.states[state] ?? null, binSeconds),
+      stateReading(
+        state as 0 | 1,
+        product,
+        row,
+        exact?.states[state].fits ?? fits?.states[state] ?? null,
+        binSeconds,
+      ),
     ) as [StateReading, StateReading],
   }
 }
@@ -132,7 +154,13 @@ function stateReading(
     const [name, value] = parameters[index] ?? []
     const key = `parameter-${index}`
     if (name === undefined || value === undefined) {
-      return line(key, index === 0 ? 'Exponent α' : 'Cutoff τ', fits === null ? WAITING : '—', '', index === 0 ? 'alpha' : 'tau')
+      return line(
+        key,
+        index === 0 ? 'Exponent α' : 'Cutoff τ',
+        fits === null ? WAITING : '—',
+        '',
+        index === 0 ? 'alpha' : 'tau',
+      )
     }
     const { text, interval } = formatEstimate(value)
     const waiting = fit?.status === 'no-interval' ? WAITING : ''
@@ -174,7 +202,9 @@ function stateReading(
         Number.isFinite(artefact) && artefact < 1e9 ? siDuration(artefact) : 'none to speak of',
         Number.isFinite(artefact) && artefact < 1e9 ? 'made by threshold errors alone' : '',
         'artefact',
-        reach !== null && artefact < 10 * reach ? 'Not ten times longer than the fitted cutoff: do not believe τ.' : null,
+        reach !== null && artefact < 10 * reach
+          ? 'Not ten times longer than the fitted cutoff: do not believe τ.'
+          : null,
       ),
     ],
     weights: (fits?.fits ?? []).map((one, index) => ({

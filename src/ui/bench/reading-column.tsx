@@ -9,7 +9,15 @@ interface ReadingColumnProps {
   readonly onHelp: (key: string) => void
 }
 
-function Lines({ lines, tone, onHelp }: { lines: readonly ReadingLine[]; tone?: 'on' | 'off'; onHelp: (key: string) => void }) {
+function Lines({
+  lines,
+  tone,
+  onHelp,
+}: {
+  lines: readonly ReadingLine[]
+  tone?: 'on' | 'off'
+  onHelp: (key: string) => void
+}) {
   return lines.map((one) => (
     <Quantity
       key={one.key}
@@ -84,7 +92,12 @@ export function ReadingColumn({ reading, warnings, comparisons, onHelp }: Readin
             <Lines lines={reading.general} onHelp={onHelp} />
           </section>
           <StateSection state="on" reading={reading.states[1]} comparisons={comparisons[1]} onHelp={onHelp} />
-          <StateSection state="off" reading={reading.states[0]} comparisons={comparisons[0]} onHelp={onHelp} />
+          <StateSection
+            state="off"
+            reading={reading.states[0]}
+            comparisons={comparisons[0]}
+            onHelp={onHelp}
+          />
           <section aria-label="Warnings" aria-live="polite">
             <h2>{warnings.length === 0 ? 'No warnings' : 'Before you use these numbers'}</h2>
             <ul className="warnings">

@@ -7,7 +7,12 @@
  */
 export type DragState =
   | { readonly phase: 'idle' }
-  | { readonly phase: 'dragging'; readonly startValue: number; readonly startPosition: number; readonly value: number }
+  | {
+      readonly phase: 'dragging'
+      readonly startValue: number
+      readonly startPosition: number
+      readonly value: number
+    }
 
 export type DragEvent =
   | { readonly kind: 'press'; readonly position: number; readonly value: number }
@@ -33,7 +38,12 @@ export function stepDrag(
   if (state.phase === 'idle') {
     if (event.kind !== 'press') return { state, effect: NONE }
     return {
-      state: { phase: 'dragging', startValue: event.value, startPosition: event.position, value: event.value },
+      state: {
+        phase: 'dragging',
+        startValue: event.value,
+        startPosition: event.position,
+        value: event.value,
+      },
       effect: NONE,
     }
   }

@@ -21,7 +21,7 @@ export function useDrag(options: DragOptions): (event: ReactPointerEvent<HTMLEle
   latest.current = options
   const state = useRef<DragState>(IDLE)
 
-  return useCallback((press) => {
+  return useCallback((press: ReactPointerEvent<HTMLElement>) => {
     if (press.button !== 0) return
     press.preventDefault()
     const target = press.currentTarget
@@ -45,7 +45,9 @@ export function useDrag(options: DragOptions): (event: ReactPointerEvent<HTMLEle
     )
     target.addEventListener('pointerup', (event) => send({ kind: 'release' }, event.timeStamp), { signal })
     target.addEventListener('pointercancel', (event) => send({ kind: 'cancel' }, event.timeStamp), { signal })
-    target.addEventListener('lostpointercapture', (event) => send({ kind: 'release' }, event.timeStamp), { signal })
+    target.addEventListener('lostpointercapture', (event) => send({ kind: 'release' }, event.timeStamp), {
+      signal,
+    })
     target.ownerDocument.addEventListener(
       'keydown',
       (event) => {

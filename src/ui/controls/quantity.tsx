@@ -33,7 +33,13 @@ export function Quantity({ label, text, detail, helpKey, tone, onHelp }: Quantit
       ) : (
         <span className="term">{label}</span>
       )}
-      <button type="button" className="figure" onClick={copy} title="Copy" aria-label={`${label}: ${text}. Copy`}>
+      <button
+        type="button"
+        className="figure"
+        onClick={copy}
+        title="Copy"
+        aria-label={`${label}: ${text}. Copy`}
+      >
         {copied ? 'copied' : text}
       </button>
       <span className="detail">{detail ?? '\u00a0'}</span>

@@ -18,7 +18,8 @@ export const HELP: readonly HelpEntry[] = [
     key: 'baseline',
     term: 'Baseline and band',
     text: 'The off level, background included, is estimated only from bins that are confidently off, so that it cannot climb into long on-times; its 95 % band widens where there was nothing to rest on. Counts are never altered: the baseline enters the model and is subtracted only for display.',
-    source: 'Penalised Poisson likelihood; smoothing by differences: Eilers and Marx, Stat. Sci. 11, 89 (1996).',
+    source:
+      'Penalised Poisson likelihood; smoothing by differences: Eilers and Marx, Stat. Sci. 11, 89 (1996).',
   },
   {
     key: 'plant',
@@ -42,7 +43,8 @@ export const HELP: readonly HelpEntry[] = [
     key: 'on-fraction',
     term: 'On fraction',
     text: 'The share of usable time spent on, corrected for the two error rates. Its interval comes from resampling whole stretches of the record, since neighbouring bins are not independent; with heavy-tailed dwells it is wide for good reason.',
-    source: 'Block bootstrap: Künsch, Ann. Stat. 17, 1217 (1989); Politis and Romano, J. Am. Stat. Assoc. 89, 1303 (1994).',
+    source:
+      'Block bootstrap: Künsch, Ann. Stat. 17, 1217 (1989); Politis and Romano, J. Am. Stat. Assoc. 89, 1303 (1994).',
   },
   {
     key: 'alpha',
@@ -61,13 +63,15 @@ export const HELP: readonly HelpEntry[] = [
     key: 'weights',
     term: 'Law weights',
     text: 'How the laws share the evidence among them, from AICc at the same shortest fitted dwell. A weight near one compares only the laws listed; look at the goodness of fit before believing any.',
-    source: 'Burnham and Anderson, Model Selection and Multimodel Inference, Springer (2002); Vuong, Econometrica 57, 307 (1989).',
+    source:
+      'Burnham and Anderson, Model Selection and Multimodel Inference, Springer (2002); Vuong, Econometrica 57, 307 (1989).',
   },
   {
     key: 'goodness',
     term: 'Goodness of fit',
     text: 'The largest distance between the observed and fitted survival, compared with data simulated from the fit under the same censoring and fitted again. A p below about 0.1 says that the law does not describe these dwells.',
-    source: 'Parametric bootstrap of the Kolmogorov–Smirnov distance: Clauset, Shalizi and Newman, SIAM Rev. 51, 661 (2009).',
+    source:
+      'Parametric bootstrap of the Kolmogorov–Smirnov distance: Clauset, Shalizi and Newman, SIAM Rev. 51, 661 (2009).',
   },
   {
     key: 'shortest',

@@ -11,9 +11,10 @@ export function HelpSheet({ entry, onClose }: { entry: string | null; onClose: (
     <Sheet title="Help" onClose={onClose}>
       <h3>Working</h3>
       <p>
-        Drag the threshold across the trace, or focus it and use the arrow keys (Shift: ten counts). Wheel over the trace
-        to zoom, drag to move, arrow keys and + − with the trace focused. Ctrl+Z undoes every choice, Ctrl+Shift+Z brings
-        it back. Drop files anywhere; drop an exported figure to restore its choices. Everything stays in this browser.
+        Drag the threshold across the trace, or focus it and use the arrow keys (Shift: ten counts). Wheel
+        over the trace to zoom, drag to move, arrow keys and + − with the trace focused. Ctrl+Z undoes every
+        choice, Ctrl+Shift+Z brings it back. Drop files anywhere; drop an exported figure to restore its
+        choices. Everything stays in this browser.
       </p>
       <dl>
         {HELP.map(({ key, term, text, source }) => (
