@@ -1,4 +1,4 @@
-import { lnMills } from '../numeric/normal.ts'
+import { lnMills, lnNormalUpperTail } from '../numeric/normal.ts'
 import { normalExcessVariate } from '../numeric/variates.ts'
 import type { Law } from './law.ts'
 import { meanLog, spreadLog } from './weighted-mean.ts'
@@ -28,6 +28,8 @@ export const logNormal: Law = {
     const z0 = (lnShortest - mean) / sigma
     const lnMills0 = lnMills(z0)
     const lnFront = -Math.log(sigma) - lnMills0
+    // With the median above s the tails themselves are the accurate form, with s far above it their ratios to phi.
+    const lnTail0 = lnNormalUpperTail(z0)
     return {
       logDensity(t) {
         if (t < shortest || t === Number.POSITIVE_INFINITY) return Number.NEGATIVE_INFINITY
@@ -39,6 +41,7 @@ export const logNormal: Law = {
         if (t <= shortest) return 0
         if (t === Number.POSITIVE_INFINITY) return Number.NEGATIVE_INFINITY
         const d = (Math.log(t) - lnShortest) / sigma
+        if (z0 < 1) return lnNormalUpperTail(z0 + d) - lnTail0
         return lnMills(z0 + d) - lnMills0 - d * (z0 + 0.5 * d)
       },
     }

@@ -25,7 +25,7 @@ export const powerCutoffSurvival: Law = {
     const lnShortest = Math.log(shortest)
     return {
       logDensity(t) {
-        if (t < shortest) return Number.NEGATIVE_INFINITY
+        if (t < shortest || t === Number.POSITIVE_INFINITY) return Number.NEGATIVE_INFINITY
         return Math.log(a / t + rate) - a * (Math.log(t) - lnShortest) - rate * (t - shortest)
       },
       logSurvival(t) {
