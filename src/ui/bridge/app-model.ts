@@ -1,7 +1,7 @@
 import type { StoreApi } from 'zustand/vanilla'
 import { DEMONSTRATION } from '../../core/simulate/demonstration.ts'
 import type { Goodness } from '../../core/fits/goodness-of-fit.ts'
-import { goodnessOf } from '../../core/fits/goodness-of-fit.ts'
+import { goodnessFrom } from '../../core/fits/goodness-of-fit.ts'
 import { type EmitterEntry, newSession, type Session } from '../../session/schema/session.ts'
 import {
   type Opened,
@@ -191,7 +191,7 @@ export async function appModel(spawn: () => Worker): Promise<AppModel> {
         (count) => results.setState({ goodnessProgress: count / slices.length }),
         signal,
       )
-      const verdict: Goodness = goodnessOf(fit, distance, parts, seed, signal.aborted)
+      const verdict: Goodness = goodnessFrom(fit, distance, parts, seed, signal.aborted)
       put({ status: 'arrived', value: verdict })
     } catch (error) {
       put({ status: 'failed', sentence: error instanceof Error ? error.message : String(error) })

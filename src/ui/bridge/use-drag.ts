@@ -24,7 +24,7 @@ export function useDrag(options: DragOptions): (event: ReactPointerEvent<HTMLEle
   return useCallback((press: ReactPointerEvent<HTMLElement>) => {
     if (press.button !== 0) return
     press.preventDefault()
-    const target = press.currentTarget
+    const target: HTMLElement = press.currentTarget
     target.focus({ preventScroll: true })
     target.setPointerCapture(press.pointerId)
     const listeners = new AbortController()
