@@ -5,6 +5,8 @@ import type { Range } from './climb.ts'
 const LEAST_GAIN = 3e-4
 /** A parabola that foretold the height this well needs no second one. */
 const TRUSTED = 2e-5
+/** Longest step, in widths of the dome. */
+const MOST_STEP = 10
 const MOST_ROUNDS = 25
 
 /**
@@ -31,10 +33,11 @@ export function ridge(
     const d2 = ((fr - value) / (right - x) - d1) / (right - left)
     const slope = d1 - d2 * (left - x)
     if (!(d2 < 0) || !Number.isFinite(slope)) return wide(f, x, value, range, error)
-    const step = Math.max(-8 * error, Math.min(8 * error, -slope / (2 * d2)))
+    const full = -slope / (2 * d2)
+    const step = Math.max(-MOST_STEP * error, Math.min(MOST_STEP * error, full))
     const next = Math.min(range.high, Math.max(range.low, x + step))
     const gain = slope * (next - x) + d2 * (next - x) ** 2
-    if (gain < LEAST_GAIN) return { x: next, value: value + Math.max(0, gain) }
+    if (gain < LEAST_GAIN && step === full) return { x: next, value: value + Math.max(0, gain) }
     const reached = f(next)
     if (!(reached >= value)) {
       h *= 0.3
@@ -45,7 +48,7 @@ export function ridge(
     h = Math.max(0.02 * error, Math.min(0.2 * error, 0.3 * Math.abs(next - x)))
     x = next
     value = reached
-    if (surprise < TRUSTED) return { x, value }
+    if (surprise < TRUSTED && step === full) return { x, value }
   }
   return { x, value }
 }

@@ -20,7 +20,8 @@ export interface TriangleNodes {
 const POINTS = [
   { from: 1, points: 10 },
   { from: 6, points: 5 },
-  { from: 21, points: 3 },
+  { from: 21, points: 4 },
+  { from: 40, points: 3 },
   { from: 180, points: 2 },
 ] as const
 /** Kernels that reach below one bin, or below the shortest duration, are cut into panels of this many points. */
