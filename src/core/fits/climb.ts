@@ -16,7 +16,7 @@ export interface Summit {
 const LEAST_GAIN = 1e-7
 const MOST_ROUNDS = 60
 /** Step of the differences as a share of the width of the dome along its coordinate. */
-const DOME_SHARE = 0.4
+const DOME_SHARE = 0.1
 
 function clip(x: number, { low, high }: Range): number {
   return Math.min(high, Math.max(low, x))
@@ -48,7 +48,7 @@ export function climb(
     const step = model === null ? null : newtonStep(model, x, ranges)
     let moved = false
     if (step !== null && model !== null) {
-      // Differences over a third of the width of the dome are right to a small part of it; wider ones mislead.
+      // Differences over a small part of the width of the dome are right; wide ones mislead.
       const wanted = steps.map((size, i) =>
         model.hessian[i][i] < 0 ? Math.min(scales[i], DOME_SHARE / Math.sqrt(-model.hessian[i][i])) : size,
       )

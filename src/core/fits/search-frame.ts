@@ -42,7 +42,7 @@ const FASTEST = 50
 export function searchFrame(law: Law, shortestSeconds: number, typicalSeconds: number): SearchFrame {
   if (law.name === 'log-normal') return logNormalFrame(law, Math.log(typicalSeconds))
   if (law.name === 'stretched') return stretchedFrame(law, Math.log(typicalSeconds))
-  return ownFrame(law, shortestSeconds)
+  return ownFrame(law, shortestSeconds, typicalSeconds)
 }
 
 function shareOf(dwells: number): number {
@@ -50,10 +50,10 @@ function shareOf(dwells: number): number {
 }
 
 /** The law's own coordinates; rates get an upper end tied to the shortest duration, exponents stay above 1. */
-function ownFrame(law: Law, shortestSeconds: number): SearchFrame {
+function ownFrame(law: Law, shortestSeconds: number, typicalSeconds: number): SearchFrame {
   const ranges = law.coordinates.map(({ name, low, high }) => {
     if (name === 'kappa') return { low: 0, high: FASTEST / shortestSeconds }
-    if (name === 'rate') return { low: 1e-12 / shortestSeconds, high: FASTEST / shortestSeconds }
+    if (name === 'rate') return { low: 1e-12 / typicalSeconds, high: FASTEST / shortestSeconds }
     return { low: name === 'alpha' && low === 1 ? 1 + 1e-9 : low, high }
   })
   const two = ranges.length === 2
