@@ -24,6 +24,7 @@ export const LAW_CASES: readonly {
     ['power-cutoff-density', [0.4, 1], 0.03],
     ['power-cutoff-density', [-1.5, 2], 0.03],
     ['power-cutoff-density', [-1.5, 300], 0.03],
+    ['power-cutoff-density', [-1.9, 100], 0.03],
     ['exponential', [0.5], 0.02],
     ['exponential', [300], 0.02],
     ['log-normal', [-1, 0.7], 0.03],
