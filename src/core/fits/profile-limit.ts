@@ -3,7 +3,7 @@ import { ridge } from './ridge.ts'
 
 /** What a profile walks on: ln L at a value of the profiled coordinate and of the other. */
 export interface ProfileProblem {
-  f(value: number, other: number): number
+  readonly f: (value: number, other: number) => number
   readonly range: Range
   /** Null when there is no other coordinate. */
   readonly otherRange: Range | null

@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { binLikelihood } from '../../../src/core/fits/bin-likelihood.ts'
 import { continuousLikelihood } from '../../../src/core/fits/continuous-fit.ts'

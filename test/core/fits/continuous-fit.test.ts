@@ -13,7 +13,7 @@ interface Named {
   readonly law: LawName
   /** Whether the reference fit is conditional on the shortest duration. */
   readonly truncated: boolean
-  read(params: Record<string, number>): number[]
+  readonly read: (params: Record<string, number>) => number[]
 }
 const MODELS: Record<string, Named> = {
   powerlaw: { law: 'power', truncated: true, read: ({ alpha }) => [alpha] },
@@ -113,7 +113,7 @@ describe('profile intervals against published data', () => {
   it('rate of a censored exponential (Gehan 1965)', () => {
     const { tauSeconds } = fitContinuous(LAWS.exponential, dwellsOf('gehan_6MP', false), BOTH).parameters
     const [low, high] = intervals.gehan_6MP_rate.profile
-    expect(1 / (tauSeconds.estimate ?? Number.NaN)).toBeCloseTo(intervals.gehan_6MP_rate.rate, 6)
+    expect(1 / (tauSeconds.estimate ?? Number.NaN)).toBeCloseTo(intervals.gehan_6MP_rate.rate, 5)
     expect(1 / (tauSeconds.high ?? Number.NaN)).toBeCloseTo(low, 5)
     expect(1 / (tauSeconds.low ?? Number.NaN)).toBeCloseTo(high, 5)
   })

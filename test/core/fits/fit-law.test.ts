@@ -1,4 +1,4 @@
-import fc from 'fast-check'
+import * as fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { binLikelihood } from '../../../src/core/fits/bin-likelihood.ts'
 import { fitLaw } from '../../../src/core/fits/fit-law.ts'
@@ -17,7 +17,7 @@ describe('fitLaw', () => {
     expect(fit.status).toBe('ok')
     const likelihood = binLikelihood(law, sample, 3)
     // A grid that halves its width about its best point, thirty times.
-    let centre = [...truth]
+    let centre: number[] = [...truth]
     let width = truth.map((v) => Math.max(0.6 * Math.abs(v), 0.3))
     let best = likelihood.at(centre)
     for (let round = 0; round < 30; round++) {
@@ -155,7 +155,7 @@ describe('fitLaw', () => {
   })
 
   it('says that a law does not suit dwells that are all alike', () => {
-    const fit = fitLaw(power, sampleOf(new Array(50).fill(3)), 3, BOTH)
+    const fit = fitLaw(power, sampleOf(Array.from({ length: 50 }, () => 3)), 3, BOTH)
     expect(fit.status).toBe('at-bound')
     expect(fit.message).toMatch(/end of its range/)
   })
