@@ -15,7 +15,7 @@ export interface Recipe {
     readonly excludedSeconds: readonly (readonly [number, number])[]
   }
   readonly threshold: {
-    readonly rule: 'crossing' | 'sigma' | 'least-variance' | 'hand'
+    readonly rule: 'half' | 'crossing' | 'sigma' | 'least-variance' | 'hand'
     /** For `sigma`: off level plus this many standard deviations. */
     readonly sigmas: number
     /** For `hand`: integer counts per bin at the mean baseline; null until set. */

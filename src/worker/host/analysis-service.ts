@@ -1,6 +1,7 @@
 import { plantEvent } from '../../core/baseline/plant-event.ts'
 import { sampleFromDwells } from '../../core/dwells/dwell-sample-of.ts'
-import { goodnessSlice, survivalDistance } from '../../core/fits/goodness-of-fit.ts'
+import { goodnessSlice } from '../../core/fits/goodness-of-fit.ts'
+import { survivalDistance } from '../../core/fits/survival-distance.ts'
 import { lawNamed } from '../../core/laws/all-laws.ts'
 import { seededRandom } from '../../core/numeric/seeded-random.ts'
 import type { RowFits } from '../../core/pipeline/analysis-products.ts'
@@ -71,7 +72,7 @@ export function analysisService(): AnalysisService {
             index,
             column,
             kind: record.kind,
-            photons: record.kind === 'photons' ? record.photons : record.counts.reduce((a, b) => a + b, 0),
+            photons: record.kind === 'photons' ? record.photons : totalOf(record.counts),
             durationSeconds:
               record.kind === 'photons'
                 ? (record.endTick - record.startTick) * record.tickSeconds
@@ -182,4 +183,10 @@ export function analysisService(): AnalysisService {
           .catch(() => resolve(false))
       }),
   }
+}
+
+function totalOf(counts: Uint16Array | Uint32Array): number {
+  let total = 0
+  for (let i = 0; i < counts.length; i++) total += counts[i]
+  return total
 }
