@@ -42,6 +42,14 @@ export function drawMark(mark: Mark, context: MarkContext): void {
       if (points.length > 0) surface.polygon(points, palette[mark.fill])
       break
     }
+    case 'outline': {
+      const points: number[] = []
+      for (let i = 0; i + 1 < mark.points.length; i += 2) {
+        points.push(at.x(mark.points[i]), at.y(mark.points[i + 1]))
+      }
+      surface.polygon(points, palette[mark.fill])
+      break
+    }
     case 'boxes': {
       const rectangles: number[] = []
       for (let i = 0; i + 3 < mark.boxes.length; i += 4) {

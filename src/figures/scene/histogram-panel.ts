@@ -19,11 +19,14 @@ export function histogramPanel(input: HistogramPanelInput): Panel {
   const { bins, first } = input
   let most = 1
   for (let i = 0; i < bins.length; i++) most = Math.max(most, bins[i])
-  const boxes: number[] = []
+  // One outline, so that neighbouring rows leave no seams.
+  const outline: number[] = [0.5, first - 0.5]
   for (let i = 0; i < bins.length; i++) {
-    if (bins[i] > 0) boxes.push(0.5, bins[i], first + i - 0.5, first + i + 0.5)
+    const length = Math.max(0.5, bins[i])
+    outline.push(length, first + i - 0.5, length, first + i + 0.5)
   }
-  const marks: Mark[] = [{ kind: 'boxes', boxes, fill: 'trace' }]
+  outline.push(0.5, first + bins.length - 0.5)
+  const marks: Mark[] = [{ kind: 'outline', points: outline, fill: 'trace' }]
   const level = (values: ArrayLike<number> | null, role: 'on' | 'off'): void => {
     if (values === null) return
     const xs: number[] = []

@@ -68,6 +68,8 @@ export type Mark =
       readonly fill: Role
       readonly steps?: boolean
     }
+  /** Filled polygon [x0, y0, x1, y1, ...]. */
+  | { readonly kind: 'outline'; readonly points: ArrayLike<number>; readonly fill: Role }
   /** Rectangles [x0, x1, y0, y1] one after the other. */
   | { readonly kind: 'boxes'; readonly boxes: ArrayLike<number>; readonly fill: Role }
   | {

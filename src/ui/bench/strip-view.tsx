@@ -1,4 +1,4 @@
-import { type PointerEvent as ReactPointerEvent, useRef } from 'react'
+import { type PointerEvent as ReactPointerEvent, useMemo, useRef } from 'react'
 import { paintScene } from '../../figures/paint/canvas.ts'
 import type { Palette } from '../../figures/scene/palette.ts'
 import type { Mark } from '../../figures/scene/scene.ts'
@@ -10,9 +10,10 @@ import {
   traceColumns,
 } from '../../figures/scene/trace-of-record.ts'
 import { useApp } from '../bridge/app-context.tsx'
+import { dragPace } from '../bridge/drag-pace.ts'
+import type { TimeWindow } from './time-window.ts'
 import { CanvasLayer, type CanvasSize } from '../bridge/canvas-layer.tsx'
 import { benchNow } from './bench-state.ts'
-import { measureToFrame } from './drag-measure.ts'
 import { showWindow } from './trace-gestures.tsx'
 import { FONT_SIZE } from './upper-layout.ts'
 import { useRegistered } from './upper-view.tsx'
@@ -25,6 +26,14 @@ export function StripView({ palette }: { palette: Palette }) {
   const ink = useRef(palette)
   ink.current = palette
   const width = useRef(1)
+  const pace = useMemo(
+    () =>
+      dragPace<TimeWindow>('trace-pan', (window) => {
+        showWindow(app, window)
+        app.loop.flush()
+      }),
+    [app],
+  )
   const kept = useRef<{ columns: TraceColumns; trace: unknown } | null>(null)
 
   const paint = (context: CanvasRenderingContext2D, canvas: CanvasSize): void => {
@@ -95,12 +104,11 @@ export function StripView({ palette }: { palette: Palette }) {
     const share = (event.clientX - left - LEFT) / width.current
     const middle = now.record[0] + share * (now.record[1] - now.record[0])
     const half = (now.window[1] - now.window[0]) / 2
-    showWindow(app, {
+    const window: TimeWindow = {
       from: Math.min(now.record[1] - 2 * half, Math.max(now.record[0], middle - half)),
       to: Math.max(now.record[0] + 2 * half, Math.min(now.record[1], middle + half)),
-    })
-    app.loop.flush()
-    measureToFrame('trace-pan', event.timeStamp)
+    }
+    pace.step(window, event.timeStamp)
   }
   const press = (event: ReactPointerEvent<HTMLDivElement>): void => {
     if (event.button !== 0) return

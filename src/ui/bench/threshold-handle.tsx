@@ -1,9 +1,10 @@
 import { countsDomain } from '../../figures/scene/trace-of-record.ts'
 import { rowOf, thresholdOf } from '../../core/pipeline/study-thresholds.ts'
 import { useApp, useChoices, useResults, useView } from '../bridge/app-context.tsx'
+import { useMemo } from 'react'
+import { dragPace } from '../bridge/drag-pace.ts'
 import { useDrag } from '../bridge/use-drag.ts'
 import { benchNow } from './bench-state.ts'
-import { measureToFrame } from './drag-measure.ts'
 import { commitThreshold, previewThreshold } from './threshold-actions.ts'
 import type { UpperLayout } from './upper-layout.ts'
 
@@ -21,16 +22,27 @@ export function ThresholdHandle({ layout }: { layout: UpperLayout }) {
 
   const clip = (value: number): number =>
     product === null ? value : thresholdOf(product.table, rowOf(product.table, value))
+  const pace = useMemo(
+    () => dragPace<number>('threshold-drag', (value) => previewThreshold(app, value)),
+    [app],
+  )
+  const keyPace = useMemo(
+    () => dragPace<number>('threshold-drag', (value) => commitThreshold(app, value, 'key')),
+    [app],
+  )
   const startDrag = useDrag({
     positionOf: (event) => event.clientY,
     valueNow: () => benchNow(app)?.threshold ?? 0,
     valueAt: (start, displacement) => clip(Math.round(start - displacement * perPixel)),
-    onPreview: (value, at) => {
-      previewThreshold(app, value)
-      measureToFrame('threshold-drag', at)
+    onPreview: (value, at) => pace.step(value, at),
+    onCommit: (value) => {
+      pace.end()
+      commitThreshold(app, value, 'drag')
     },
-    onCommit: (value) => commitThreshold(app, value, 'drag'),
-    onRestore: () => previewThreshold(app, null),
+    onRestore: () => {
+      pace.end()
+      previewThreshold(app, null)
+    },
   })
   if (now === null || product === null || now.threshold === null) return null
   const { threshold } = now
@@ -71,8 +83,7 @@ export function ThresholdHandle({ layout }: { layout: UpperLayout }) {
         if (next === null) return
         event.preventDefault()
         event.stopPropagation()
-        commitThreshold(app, clip(next), 'key')
-        measureToFrame('threshold-drag', event.timeStamp)
+        keyPace.step(clip(next), event.timeStamp)
       }}
     >
       <span className="threshold-tag" aria-hidden="true">

@@ -1,9 +1,9 @@
-import { type PointerEvent as ReactPointerEvent, useEffect, useRef } from 'react'
+import { type PointerEvent as ReactPointerEvent, useEffect, useMemo, useRef } from 'react'
 import type { Frame } from '../../figures/scene/scene.ts'
 import type { AppModel } from '../bridge/app-model.ts'
 import { useApp } from '../bridge/app-context.tsx'
+import { dragPace } from '../bridge/drag-pace.ts'
 import { benchNow } from './bench-state.ts'
-import { measureToFrame } from './drag-measure.ts'
 import { clipWindow, panWindow, type TimeWindow, zoomWindow } from './time-window.ts'
 import { pointAtTrace } from './trace-hover.ts'
 
@@ -30,6 +30,14 @@ export function showWindow(app: AppModel, window: TimeWindow): void {
 export function TraceGestures({ frame }: { frame: Frame }) {
   const app = useApp()
   const ref = useRef<HTMLDivElement>(null)
+  const pace = useMemo(
+    () =>
+      dragPace<TimeWindow>('trace-pan', (window) => {
+        showWindow(app, window)
+        app.loop.flush()
+      }),
+    [app],
+  )
 
   const nowWindow = (): { window: TimeWindow; record: TimeWindow } | null => {
     const now = benchNow(app)
@@ -53,16 +61,14 @@ export function TraceGestures({ frame }: { frame: Frame }) {
         1,
         Math.max(0, (event.clientX - element.getBoundingClientRect().left) / frame.width),
       )
+      // A step that still waits for its frame counts as made.
+      const from = pace.waiting() ?? here.window
       if (event.shiftKey || Math.abs(event.deltaX) > Math.abs(event.deltaY)) {
-        showWindow(app, panWindow(here.window, (event.deltaX || event.deltaY) / frame.width, here.record))
+        pace.step(panWindow(from, (event.deltaX || event.deltaY) / frame.width, here.record), event.timeStamp)
       } else {
-        showWindow(
-          app,
-          zoomWindow(here.window, Math.exp(Math.max(-1, Math.min(1, event.deltaY * 0.0025))), share),
-        )
+        const factor = Math.exp(Math.max(-1, Math.min(1, event.deltaY * 0.0025)))
+        pace.step(zoomWindow(from, factor, share), event.timeStamp)
       }
-      app.loop.flush()
-      measureToFrame('trace-pan', event.timeStamp)
     }
     element.addEventListener('wheel', wheel, { passive: false })
     return () => element.removeEventListener('wheel', wheel)
@@ -75,12 +81,12 @@ export function TraceGestures({ frame }: { frame: Frame }) {
     element.setPointerCapture(press.pointerId)
     const listeners = new AbortController()
     const { signal } = listeners
+    const moves = 'onpointerrawupdate' in element ? 'pointerrawupdate' : 'pointermove'
     element.addEventListener(
-      'pointermove',
+      moves as 'pointermove',
       (event) => {
-        showWindow(app, panWindow(here.window, (press.clientX - event.clientX) / frame.width, here.record))
-        app.loop.flush()
-        measureToFrame('trace-pan', event.timeStamp)
+        const share = (press.clientX - event.clientX) / frame.width
+        pace.step(panWindow(here.window, share, here.record), event.timeStamp)
       },
       { signal },
     )

@@ -12,13 +12,14 @@ const LEFT = 52
 const TOP = 10
 const BOTTOM = 34
 const GAP = 10
+const RIGHT = 14
 
 export function upperLayout(width: number, height: number): UpperLayout {
   const narrow = width < 640
   const histogramWidth = narrow ? 72 : 92
   const column = narrow ? 50 : 64
   const frameHeight = Math.max(20, height - TOP - BOTTOM)
-  const right = 3 * column + 3 * GAP
+  const right = 3 * column + 3 * GAP + RIGHT
   const traceWidth = Math.max(60, width - LEFT - histogramWidth - GAP - right)
   const at = (x: number, frameWidth: number): Frame => ({ x, y: TOP, width: frameWidth, height: frameHeight })
   const first = LEFT + traceWidth + histogramWidth + 2 * GAP

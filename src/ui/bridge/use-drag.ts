@@ -38,8 +38,10 @@ export function useDrag(options: DragOptions): (event: ReactPointerEvent<HTMLEle
       if (effect.kind === 'restore') latest.current.onRestore(effect.value)
       if (next.phase === 'idle') listeners.abort()
     }
+    // Raw updates come at once; plain moves only at the beginning of a frame, up to 16 ms later.
+    const moves = 'onpointerrawupdate' in target ? 'pointerrawupdate' : 'pointermove'
     target.addEventListener(
-      'pointermove',
+      moves as 'pointermove',
       (event) => send({ kind: 'move', position: latest.current.positionOf(event) }, event.timeStamp),
       { signal },
     )
