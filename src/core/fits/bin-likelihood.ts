@@ -1,5 +1,5 @@
 import type { DwellSample } from '../dwells/dwell-sample.ts'
-import type { Law } from '../laws/law.ts'
+import type { Law, LawAt } from '../laws/law.ts'
 import { compressed, type WeightedBins } from './compress-sample.ts'
 import { edgeShift, lnMeanSurvival, referenceSeconds } from './mean-survival.ts'
 import { triangleNodes } from './triangle-nodes.ts'
@@ -73,13 +73,34 @@ export function binLikelihood(
         for (let n = first[i] + 1; n < first[i + 1]; n++) {
           mass += shares[n] * Math.exp(here.logDensity(seconds[n]) - top)
         }
-        sum += weights[i] * (top + Math.log(mass))
+        sum +=
+          weights[i] *
+          (top +
+            (mass < Infinity
+              ? Math.log(mass)
+              : lnSteepMass(here, seconds, shares, first[i], first[i + 1], top)))
       }
       for (let i = 0; i < censored.bins.length; i++) sum += censored.weights[i] * lnSurvival(censored.bins[i])
       for (let i = 0; i < entered.bins.length; i++) sum -= entered.weights[i] * lnSurvival(entered.bins[i])
       return sum - anchored * lnSurvival(shortestBins)
     },
   }
+}
+
+/** ln of the sum of share x density / e^top where the density climbs by more than e^700 within one kernel. */
+function lnSteepMass(
+  at: LawAt,
+  seconds: Float64Array,
+  shares: Float64Array,
+  from: number,
+  to: number,
+  top: number,
+): number {
+  let highest = top
+  for (let n = from; n < to; n++) highest = Math.max(highest, at.logDensity(seconds[n]))
+  let mass = 0
+  for (let n = from; n < to; n++) mass += shares[n] * Math.exp(at.logDensity(seconds[n]) - highest)
+  return highest - top + Math.log(mass)
 }
 
 /** Dwells of at least `shortestBins`; nodes of a compressed list count by their own position. */

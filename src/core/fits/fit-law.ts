@@ -18,7 +18,7 @@ export interface FitOptions {
   readonly start?: readonly number[]
 }
 
-/** Complete dwells from which an exponent, and a cutoff or curvature beside it, are worth reading (science of the trade). */
+/** Complete dwells from which an exponent, and a cutoff or curvature beside it, are worth reading; below, the message warns. */
 const ENOUGH = { one: 50, two: 200 } as const
 
 /**

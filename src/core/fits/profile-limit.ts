@@ -31,6 +31,8 @@ export function profileLimit(problem: ProfileProblem, z: number, side: -1 | 1): 
   const { f, range, otherRange, best, error, otherError } = problem
   const bound = side < 0 ? range.low : range.high
   if (best.value === bound) return null
+  // The other coordinate is looked for on the line through the last two places where it was found.
+  let last = { value: best.value, other: best.other }
   let slope = problem.otherSlope
   const fall = (value: number): number => {
     let height: number
@@ -38,12 +40,15 @@ export function profileLimit(problem: ProfileProblem, z: number, side: -1 | 1): 
     else {
       const along = ridge(
         (other) => f(value, other),
-        best.other + slope * (value - best.value),
+        last.other + slope * (value - last.value),
         otherRange,
         otherError,
       )
       height = along.value
-      if (Number.isFinite(height)) slope = (along.x - best.other) / (value - best.value)
+      if (Number.isFinite(height) && value !== last.value) {
+        slope = (along.x - last.other) / (value - last.value)
+        last = { value, other: along.x }
+      }
     }
     return Number.isNaN(height) ? Infinity : Math.sqrt(2 * Math.max(0, best.height - height))
   }

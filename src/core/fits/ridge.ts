@@ -8,6 +8,7 @@ const TRUSTED = 2e-5
 /** Longest step, in widths of the dome. */
 const MOST_STEP = 10
 const MOST_ROUNDS = 25
+const MOST_WINDOWS = 6
 
 /**
  * Maximum of a smooth function of one coordinate near a good start: parabolas through three points, clipped to the
@@ -53,9 +54,18 @@ export function ridge(
   return { x, value }
 }
 
+/** Brent's method on a window around x that is moved and widened until the maximum lies inside. */
 function wide(f: (x: number) => number, x: number, value: number, range: Range, error: number) {
-  const low = Math.max(range.low, x - 30 * error)
-  const high = Math.min(range.high, x + 30 * error)
-  const found = minimise1d((at) => -f(at), low, high, { tolerance: 1e-3 * error, mostEvaluations: 60 })
-  return -found.value > value ? { x: found.x, value: -found.value } : { x, value }
+  let best = { x, value }
+  for (let width = 30 * error, tries = 0; tries < MOST_WINDOWS; width *= 4, tries++) {
+    const low = Math.max(range.low, best.x - width)
+    const high = Math.min(range.high, best.x + width)
+    const found = minimise1d((at) => -f(at), low, high, { tolerance: 1e-3 * error, mostEvaluations: 60 })
+    if (-found.value > best.value) best = { x: found.x, value: -found.value }
+    const margin = 0.02 * (high - low)
+    const atLow = best.x < low + margin && low > range.low
+    const atHigh = best.x > high - margin && high < range.high
+    if (!atLow && !atHigh) break
+  }
+  return best
 }

@@ -19,7 +19,8 @@ export interface ProfileAxis {
  *                parameters, so ln L is concave without censoring.
  *   stretched    (ln a, beta) with S ~ exp[-(a/beta) e^(beta u)], a = beta (g/tau)^beta.
  *
- * Both are the power law of exponent 1 + b, 1 + a at c = 0, beta = 0.
+ * Both are the power law of exponent 1 + b, 1 + a at c = 0, beta = 0. When ln t_m or ln tau is profiled far below the bin,
+ * c and beta fall with its inverse, so their logarithms are maximised: widths stay alike.
  */
 export interface SearchFrame {
   readonly ranges: readonly Range[]
@@ -43,6 +44,10 @@ export function searchFrame(law: Law, shortestSeconds: number, typicalSeconds: n
   if (law.name === 'log-normal') return logNormalFrame(law, Math.log(typicalSeconds))
   if (law.name === 'stretched') return stretchedFrame(law, Math.log(typicalSeconds))
   return ownFrame(law, shortestSeconds, typicalSeconds)
+}
+
+function logarithm({ low, high }: Range): Range {
+  return { low: Math.log(low), high: Math.log(high) }
 }
 
 function shareOf(dwells: number): number {
@@ -88,9 +93,9 @@ function logNormalFrame(law: Law, lnTypical: number): SearchFrame {
     axes: [
       {
         range: median,
-        otherRange: curvature,
-        place: (mean, c) => [(lnTypical - mean) * c, c],
-        read: ([b, c]) => ({ value: lnTypical - b / c, other: c }),
+        otherRange: logarithm(curvature),
+        place: (mean, lnC) => [(lnTypical - mean) * Math.exp(lnC), Math.exp(lnC)],
+        read: ([b, c]) => ({ value: lnTypical - b / c, other: Math.log(c) }),
       },
       {
         range: sigma,
@@ -113,9 +118,9 @@ function stretchedFrame(law: Law, lnTypical: number): SearchFrame {
     axes: [
       {
         range: lnTau,
-        otherRange: beta,
-        place: (tau, b) => [Math.log(b) + b * (lnTypical - tau), b],
-        read: ([a, b]) => ({ value: lnTypical + (Math.log(b) - a) / b, other: b }),
+        otherRange: logarithm(beta),
+        place: (tau, lnB) => [lnB + Math.exp(lnB) * (lnTypical - tau), Math.exp(lnB)],
+        read: ([a, b]) => ({ value: lnTypical + (Math.log(b) - a) / b, other: Math.log(b) }),
       },
       { range: beta, otherRange: lnA, place: (b, a) => [a, b], read: ([a, b]) => ({ value: b, other: a }) },
     ],

@@ -96,6 +96,12 @@ describe('binLikelihood', () => {
     )
   })
 
+  it('stays finite where the density climbs by more than e^700 within a bin', () => {
+    const value = binLikelihood(LAWS['log-normal'], sampleOf([3, 4, 8]), 3).at([24000, 1.55])
+    expect(value).toBeLessThan(-1e8)
+    expect(Number.isFinite(value)).toBe(true)
+  })
+
   it('stays finite far out in a tail, where densities underflow', () => {
     const value = binLikelihood(LAWS.exponential, sampleOf([3, 4, 1e6]), 3).at([1])
     expect(value).toBeCloseTo(-1e4, -2)

@@ -62,6 +62,11 @@ describe('ridge', () => {
     expect(top.value).toBeCloseTo(-1, 4)
   })
 
+  it('goes after a dome a hundred widths away over a slope that bends upwards', () => {
+    const top = ridge((x) => 100 * Math.exp(-((x - 50) ** 2) / 400), 0, { low: -1000, high: 1000 }, 0.5)
+    expect(top.x).toBeCloseTo(50, 1)
+  })
+
   it('stays in its range', () => {
     expect(ridge((x) => x, 0, { low: -1, high: 1 }, 0.1).x).toBeCloseTo(1, 3)
     expect(ridge((x) => -((x - 5) ** 2), 0, { low: -1, high: 1 }, 0.5).x).toBe(1)
