@@ -1,6 +1,6 @@
 import { corridorOf, type Corridor } from '../../core/pipeline/corridor.ts'
 import type { RecordInHand } from '../../core/pipeline/prepare-trace.ts'
-import type { ReadRecord } from '../../core/read/read-source.ts'
+import type { ReadRecord } from '../../core/read/read-record.ts'
 import { readSource } from '../../core/read/read-source.ts'
 import { DEMONSTRATION } from '../../core/simulate/demonstration.ts'
 import { simulateRecord } from '../../core/simulate/simulate-record.ts'

@@ -1,0 +1,251 @@
+import type { ByteSource } from './byte-source.ts'
+import { asciiText } from './decimal.ts'
+import { type ArrayAnswer, type ImportAnswer, missingAnswers, type TimeUnit } from './import-answer.ts'
+import { isNpy, type NpyHeader, readNpyHeader } from './npy-header.ts'
+import { readNpyValues } from './npy-values.ts'
+import { isZip, memberHeader, npzMembers } from './npz-members.ts'
+import { ReadFailure, type ReadProblem } from './read-problem.ts'
+import { type TextShape, textShape } from './text-shape.ts'
+
+/** A question the file does not answer; the answer goes into the field of the same name. */
+export interface ImportQuestion {
+  readonly key: 'timeUnit' | 'binSeconds' | 'content' | 'columns'
+  readonly text: string
+}
+
+/** What was understood of a file before it is read; plain JSON. */
+export interface Preview {
+  readonly file: string
+  readonly sizeBytes: number
+  readonly kind: ImportAnswer['kind'] | null
+  /** Sentences. */
+  readonly understood: readonly string[]
+  readonly header: readonly string[]
+  /** First rows as they stand in the file. */
+  readonly rows: readonly (readonly string[])[]
+  /** Arrays of an archive. */
+  readonly members: readonly string[]
+  readonly dimensions: number
+  readonly answer: ImportAnswer | null
+  readonly questions: readonly ImportQuestion[]
+  /** A guess for the unit when it is asked for. */
+  readonly guessedUnit: TimeUnit | null
+  /** Equal for files of the same shape: their answer can be used again. */
+  readonly shapeSignature: string
+  readonly problem: ReadProblem | null
+}
+
+const PREVIEW_BYTES = 1 << 18
+const PREVIEW_ROWS = 12
+const FIRST_ITEMS = 4096
+
+const QUESTIONS: Readonly<Record<ImportQuestion['key'], string>> = {
+  timeUnit: 'In which unit are the times?',
+  binSeconds: 'How long is one bin?',
+  content: 'Are the numbers arrival times or counts per bin?',
+  columns: 'Which columns hold counts or arrival times?',
+}
+
+/** Questions that an answer leaves open. */
+export function questionsOf(answer: ImportAnswer): ImportQuestion[] {
+  return missingAnswers(answer).map((key) => ({ key, text: QUESTIONS[key] }))
+}
+
+/** First lines of a text file; what lies beyond the last complete line is left out. */
+export async function firstText(source: ByteSource): Promise<string> {
+  const bytes = await source.read(0, Math.min(source.size, PREVIEW_BYTES))
+  const from = bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0
+  const text = decodeUtf8(bytes.subarray(from))
+  if (bytes.length === source.size) return text
+  const cut = Math.max(text.lastIndexOf('\n'), text.lastIndexOf('\r'))
+  return cut > 0 ? text.slice(0, cut) : text
+}
+
+/** UTF-8, or Latin-1 where it is not valid. Core has no TextDecoder. */
+function decodeUtf8(bytes: Uint8Array): string {
+  const latin = asciiText(bytes, 0, bytes.length)
+  try {
+    return decodeURIComponent(
+      latin.replace(/[%\u0080-\u00ff]/g, (c) => `%${c.charCodeAt(0).toString(16).padStart(2, '0')}`),
+    )
+  } catch {
+    return latin
+  }
+}
+
+/** Looks at the beginning of a file and proposes how to read it. Never throws on data: see `problem`. */
+export async function previewSource(source: ByteSource): Promise<Preview> {
+  try {
+    if (source.size === 0) return refused(source, 'the file is empty.')
+    const head = await source.read(0, Math.min(source.size, 16))
+    if (isNpy(head)) return await previewNpy(source)
+    if (isZip(head)) return await previewNpz(source)
+    if (/\.np[yz]$/i.test(source.name))
+      return refused(
+        source,
+        'the name says NumPy, but the file does not begin like one. It is damaged or misnamed.',
+      )
+    if (head[0] === 0x89 && asciiText(head, 1, 4) === 'HDF')
+      return refused(
+        source,
+        'HDF5 files are not read by this version. Export the arrival times as .npy or text.',
+      )
+    if ((head[0] === 0xff && head[1] === 0xfe) || (head[0] === 0xfe && head[1] === 0xff))
+      return refused(source, 'the text is in UTF-16. Save it as UTF-8 or plain text.')
+    return await previewText(source)
+  } catch (error) {
+    if (error instanceof ReadFailure) return { ...refused(source, ''), problem: error.problem }
+    throw error
+  }
+}
+
+function refused(source: ByteSource, what: string): Preview {
+  return {
+    file: source.name,
+    sizeBytes: source.size,
+    kind: null,
+    understood: [],
+    header: [],
+    rows: [],
+    members: [],
+    dimensions: 0,
+    answer: null,
+    questions: [],
+    guessedUnit: null,
+    shapeSignature: '',
+    problem: { sentence: `“${source.name}”: ${what}`, file: source.name, line: null, byte: null },
+  }
+}
+
+const DELIMITER_WORDS = { '\t': 'tabs', ',': 'commas', ';': 'semicolons', ' ': 'spaces' } as const
+
+async function previewText(source: ByteSource): Promise<Preview> {
+  const text = await firstText(source)
+  const controls = (text.match(/[\u0000-\u0008\u000e-\u001f]/g) ?? []).length
+  if (controls > 0) return refused(source, 'the file is neither text nor a format this version reads.')
+  const shape = textShape(text)
+  if (shape === null)
+    return refused(
+      source,
+      'no line of it is a row of numbers. Expected columns of numbers separated by commas, semicolons, tabs or spaces.',
+    )
+  const { answer } = shape
+  const questions = questionsOf(answer)
+  const only = answer.columns.length === 1 && !shape.rolesSaid
+  return {
+    ...refused(source, ''),
+    kind: 'text',
+    understood: [
+      `Text, ${answer.columns.length} ${answer.columns.length === 1 ? 'column' : `columns separated by ${DELIMITER_WORDS[answer.delimiter]}`}${answer.decimalComma ? ', decimal comma' : ''}${answer.headerLines > 0 ? `, ${answer.headerLines} line${answer.headerLines > 1 ? 's' : ''} of names` : ''}.`,
+      ...understoodTime(shape),
+    ],
+    header: shape.header,
+    rows: shape.rows.slice(0, PREVIEW_ROWS),
+    dimensions: 2,
+    answer,
+    questions: only ? [{ key: 'content', text: QUESTIONS.content }, ...questions] : questions,
+    guessedUnit: guessUnit(shape),
+    shapeSignature: [
+      'text',
+      answer.delimiter,
+      answer.decimalComma,
+      answer.columns.length,
+      ...shape.header,
+    ].join('|'),
+    problem: null,
+  }
+}
+
+function understoodTime({ answer, step }: TextShape): string[] {
+  if (answer.columns.includes('arrival')) return ['The times are taken as arrival times of photons.']
+  if (!answer.columns.includes('time')) return ['No column of times: every row is one bin.']
+  return step === null ? [] : [`The time advances by ${Number(step.toPrecision(6))} per row.`]
+}
+
+/** Bins are usually 1 to 100 ms and records minutes long; the guess that fits best. */
+function guessUnit({ answer, step, rows }: TextShape): TimeUnit | null {
+  if (answer.columns.includes('time') && step !== null) return step >= 0.5 ? 'ms' : 's'
+  const column = answer.columns.indexOf('arrival')
+  if (column < 0 || rows.length < 2) return null
+  const value = (row: readonly string[]): number => Number(row[column].replace(',', '.'))
+  const gap = (value(rows[rows.length - 1]) - value(rows[0])) / (rows.length - 1)
+  // Photons come about every 0.1 ms.
+  return gap < 0.02 ? 's' : gap < 20 ? 'ms' : gap < 5000 ? 'us' : 'ns'
+}
+
+async function previewNpy(source: ByteSource): Promise<Preview> {
+  const header = await readNpyHeader(source)
+  const rising = header.shape.length === 1 && (await startsRising(source, header))
+  return previewOfArray(source, header, { kind: 'npy', member: null }, rising, [])
+}
+
+async function previewNpz(source: ByteSource): Promise<Preview> {
+  const members = (await npzMembers(source)).filter(({ head }) => isNpy(head))
+  if (members.length === 0)
+    return refused(
+      source,
+      'the archive holds no NumPy arrays. A session file is opened by dropping it, not as data.',
+    )
+  const [first] = members
+  const header = await memberHeader(`${source.name}: ${first.name}`, first.head)
+  return previewOfArray(
+    source,
+    header,
+    { kind: 'npz', member: first.name },
+    false,
+    members.map(({ name }) => name),
+  )
+}
+
+async function startsRising(source: ByteSource, header: NpyHeader): Promise<boolean> {
+  let rising = true
+  let before = Number.NEGATIVE_INFINITY
+  let first = 0
+  const few = { ...header, items: Math.min(header.items, FIRST_ITEMS) }
+  await readNpyValues(source, few, { onProgress: () => {}, shouldStop: () => false }, (values, count) => {
+    first = values[0]
+    for (let i = 0; i < count; i++) {
+      if (values[i] < before) rising = false
+      before = values[i]
+    }
+  })
+  return rising && header.items > 2 && before > first
+}
+
+function previewOfArray(
+  source: ByteSource,
+  header: NpyHeader,
+  which: Pick<ArrayAnswer, 'kind' | 'member'>,
+  rising: boolean,
+  members: readonly string[],
+): Preview {
+  const flat = header.shape.length === 1
+  const answer: ArrayAnswer = {
+    ...which,
+    content: flat ? (rising ? 'arrival' : null) : 'counts',
+    timeUnit: null,
+    tickSeconds: null,
+    binSeconds: null,
+    emitters: !flat && header.shape[0] > header.shape[1] ? 'columns' : 'rows',
+  }
+  const questions = questionsOf(answer)
+  return {
+    ...refused(source, ''),
+    kind: which.kind,
+    understood: [
+      `NumPy array${which.member === null ? '' : ` “${which.member}”`} of type ${header.dtype}, shape ${header.shape.join(' × ')}.`,
+      flat
+        ? rising
+          ? 'The numbers never decrease: they look like arrival times.'
+          : 'One dimension: arrival times or counts per bin.'
+        : `The longer axis is taken as time, the other as ${Math.min(...header.shape)} emitters.`,
+    ],
+    members,
+    dimensions: header.shape.length,
+    answer,
+    questions: flat && rising ? [{ key: 'content', text: QUESTIONS.content }, ...questions] : questions,
+    guessedUnit: header.kind === 'f' ? 's' : 'ns',
+    shapeSignature: [which.kind, header.dtype, header.shape.length, which.member ?? ''].join('|'),
+    problem: null,
+  }
+}

@@ -1,0 +1,114 @@
+import type { ByteSource } from './byte-source.ts'
+import { asciiText } from './decimal.ts'
+import { failAtByte, failWhole, quoted } from './read-problem.ts'
+
+/** What the header of a .npy says, checked against the size of the file. */
+export interface NpyHeader {
+  readonly kind: 'i' | 'u' | 'f' | 'b'
+  readonly itemBytes: 1 | 2 | 4 | 8
+  readonly littleEndian: boolean
+  readonly fortranOrder: boolean
+  readonly shape: readonly number[]
+  /** First byte of the data. */
+  readonly dataStart: number
+  readonly items: number
+  readonly dtype: string
+}
+
+const MAGIC = [0x93, 0x4e, 0x55, 0x4d, 0x50, 0x59]
+/** Longest header read; the format itself allows more, for structured types this program does not read. */
+const LONGEST_HEADER = 1 << 16
+
+export function isNpy(bytes: Uint8Array): boolean {
+  return MAGIC.every((byte, i) => bytes[i] === byte)
+}
+
+/**
+ * Header of the published NumPy format, versions 1 to 3. Every number in it is compared with the size of the file
+ * before anything is allocated.
+ */
+export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
+  const start = await source.read(0, Math.min(source.size, 12))
+  if (start.length < 10 || !isNpy(start))
+    failAtByte(source.name, 0, 'expected a NumPy array, which begins with \\x93NUMPY. Choose a .npy file.')
+  const version = start[6]
+  if (version < 1 || version > 3)
+    failAtByte(
+      source.name,
+      6,
+      `NumPy format version ${version} is not known; save the array again with a current NumPy.`,
+    )
+  const lengthBytes = version === 1 ? 2 : 4
+  const headerStart = 8 + lengthBytes
+  if (start.length < headerStart) failAtByte(source.name, 8, 'the file ends inside its header.')
+  const length =
+    version === 1
+      ? start[8] | (start[9] << 8)
+      : start[8] + start[9] * 256 + start[10] * 65536 + start[11] * 16777216
+  if (length > LONGEST_HEADER || headerStart + length > source.size) {
+    failAtByte(
+      source.name,
+      8,
+      `the header claims ${length} bytes; the file has ${source.size}. The file is damaged or not a NumPy array.`,
+    )
+  }
+  const bytes = await source.read(headerStart, headerStart + length)
+  const text = asciiText(bytes, 0, bytes.length)
+  const descr = /'descr'\s*:\s*'([^']*)'/.exec(text)?.[1]
+  const order = /'fortran_order'\s*:\s*(True|False)/.exec(text)?.[1]
+  const shapeText = /'shape'\s*:\s*\(([^)]*)\)/.exec(text)?.[1]
+  if (descr === undefined && /'descr'\s*:\s*\[/.test(text))
+    failAtByte(source.name, headerStart, 'structured arrays are not read. Save one field as a plain array.')
+  if (descr === undefined || order === undefined || shapeText === undefined) {
+    failAtByte(
+      source.name,
+      headerStart,
+      'the header lacks descr, fortran_order or shape. The file is damaged.',
+    )
+  }
+  const type = /^([<>|=])([iufb])([1248])$/.exec(descr)
+  if (type === null || (type[2] === 'f' && type[3] === '1') || (type[2] === 'b' && type[3] !== '1')) {
+    failAtByte(
+      source.name,
+      headerStart,
+      `type ${quoted(descr)} is not read; integers, booleans and real numbers are. Convert with astype().`,
+    )
+  }
+  const parts = shapeText
+    .split(',')
+    .map((part) => part.trim())
+    .filter((part) => part !== '')
+  if (!parts.every((part) => /^\d{1,15}$/.test(part)))
+    failAtByte(
+      source.name,
+      headerStart,
+      `the shape (${shapeText.slice(0, 40)}) is not a list of whole numbers. The file is damaged.`,
+    )
+  const shape = parts.map(Number)
+  if (shape.length === 0 || shape.length > 2)
+    failWhole(
+      source.name,
+      `the array has ${shape.length} dimensions; one or two are read. Reshape it before saving.`,
+    )
+  const items = shape.reduce((product, size) => product * size, 1)
+  const itemBytes = Number(type[3]) as NpyHeader['itemBytes']
+  const dataStart = headerStart + length
+  if (items === 0) failWhole(source.name, 'the array is empty.')
+  if (items * itemBytes !== source.size - dataStart) {
+    failAtByte(
+      source.name,
+      dataStart,
+      `the header promises ${items} numbers of ${itemBytes} bytes, the file holds ${source.size - dataStart} bytes of data. It is cut short or damaged.`,
+    )
+  }
+  return {
+    kind: type[2] as NpyHeader['kind'],
+    itemBytes,
+    littleEndian: type[1] !== '>',
+    fortranOrder: order === 'True',
+    shape,
+    dataStart,
+    items,
+    dtype: descr,
+  }
+}
