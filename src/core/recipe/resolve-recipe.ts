@@ -31,3 +31,19 @@ export function resolveRecipe(base: Recipe, difference: RecipeDifference): Recip
 export function addDifference(difference: RecipeDifference, more: RecipeDifference): RecipeDifference {
   return merge(difference, more) as RecipeDifference
 }
+
+/** What must be put on top of `base` to get `wanted`; empty when they are equal. */
+export function differenceOf(base: Recipe, wanted: Recipe): RecipeDifference {
+  return (differing(base, wanted) ?? {}) as RecipeDifference
+}
+
+function differing(base: unknown, wanted: unknown): unknown {
+  if (isPlain(base) && isPlain(wanted)) {
+    const entries = Object.keys(wanted).flatMap((key) => {
+      const part = differing(base[key], wanted[key])
+      return part === undefined ? [] : [[key, part] as const]
+    })
+    return entries.length === 0 ? undefined : Object.fromEntries(entries)
+  }
+  return JSON.stringify(base) === JSON.stringify(wanted) ? undefined : wanted
+}

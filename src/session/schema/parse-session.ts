@@ -1,25 +1,14 @@
 import * as v from 'valibot'
 import { parseRecipe } from '../../core/recipe/recipe-schema.ts'
 import { resolveRecipe } from '../../core/recipe/resolve-recipe.ts'
+import { parseImportAnswer } from '../../core/read/import-answer-schema.ts'
+import type { ImportAnswer } from '../../core/read/import-answer.ts'
 import { migrate } from './migrations.ts'
-import type { Session } from './session.ts'
-import { SESSION_VERSION } from './session.ts'
+import { parseOrigin } from './origin-schema.ts'
+import { type EmitterEntry, type Session, SESSION_VERSION } from './session.ts'
 
 const text = v.pipe(v.string(), v.maxLength(4096))
 const plainObject = v.record(text, v.unknown())
-
-const ORIGIN = v.variant('kind', [
-  v.strictObject({ kind: v.literal('demonstration'), name: text }),
-  v.strictObject({
-    kind: v.literal('file'),
-    fileName: text,
-    sha256: v.pipe(v.string(), v.regex(/^[0-9a-f]{64}$/, 'expected 64 hexadecimal digits')),
-    sizeBytes: v.pipe(v.number(), v.integer(), v.minValue(0)),
-    answer: plainObject,
-    index: v.pipe(v.number(), v.integer(), v.minValue(0)),
-    column: v.nullable(v.pipe(v.number(), v.integer(), v.minValue(0))),
-  }),
-])
 
 const SESSION = v.strictObject({
   version: v.literal(SESSION_VERSION),
@@ -28,7 +17,7 @@ const SESSION = v.strictObject({
   changedAt: text,
   recipe: v.unknown(),
   emitters: v.pipe(
-    v.array(v.strictObject({ id: text, name: text, origin: ORIGIN, difference: plainObject })),
+    v.array(v.strictObject({ id: text, name: text, origin: v.unknown(), difference: plainObject })),
     v.maxLength(100_000),
   ),
   currentEmitterId: v.nullable(text),
@@ -60,9 +49,19 @@ export function parseSession(value: unknown): SessionParsed {
   }
   const recipe = parseRecipe(parsed.output.recipe)
   if (!recipe.ok) return recipe
+  const emitters: EmitterEntry[] = []
   for (const emitter of parsed.output.emitters) {
     const resolved = parseRecipe(resolveRecipe(recipe.recipe, emitter.difference))
     if (!resolved.ok) return { ok: false, problem: `Emitter “${emitter.name}”: ${resolved.problem}` }
+    const origin = parseOrigin(emitter.origin)
+    if (!origin.ok) return { ok: false, problem: `Emitter “${emitter.name}”: ${origin.problem}` }
+    emitters.push({ ...emitter, origin: origin.origin })
+  }
+  const importAnswers: Record<string, ImportAnswer> = {}
+  for (const [shape, remembered] of Object.entries(parsed.output.importAnswers)) {
+    const answer = parseImportAnswer(remembered)
+    if (!answer.ok) return answer
+    importAnswers[shape] = answer.answer
   }
   const ids = new Set(parsed.output.emitters.map(({ id }) => id))
   if (ids.size !== parsed.output.emitters.length)
@@ -73,8 +72,7 @@ export function parseSession(value: unknown): SessionParsed {
   }
   return {
     ok: true,
-    // The answers of readers are checked by the readers when the file is read again.
-    session: { ...parsed.output, recipe: recipe.recipe } as Session,
+    session: { ...parsed.output, recipe: recipe.recipe, emitters, importAnswers },
     migratedFrom: migrated.from === SESSION_VERSION ? null : migrated.from,
   }
 }
