@@ -1,11 +1,12 @@
 import { parseArgs } from 'node:util'
+import { type TimeUnit, UNIT_SECONDS } from '../core/read/import-answer.ts'
 
 export interface BatchArguments {
   readonly files: readonly string[]
   readonly outFolder: string
   readonly recipeFile: string | null
   readonly binSeconds: number | null
-  readonly timeUnit: string | null
+  readonly timeUnit: Exclude<TimeUnit, 'ticks'> | null
   readonly countsBinSeconds: number | null
 }
 
@@ -42,7 +43,7 @@ export function batchArguments(argv: readonly string[]): BatchArguments | string
   if (typeof bin === 'string') return bin
   if (typeof countsBin === 'string') return countsBin
   const unit = values['time-unit'] ?? null
-  if (unit !== null && !['s', 'ms', 'us', 'ns'].includes(unit)) {
+  if (unit !== null && !isUnit(unit)) {
     return `--time-unit expects s, ms, us or ns, got “${unit}”.`
   }
   return {
@@ -68,4 +69,8 @@ function parse(argv: readonly string[]) {
       help: { type: 'boolean', short: 'h' },
     },
   })
+}
+
+function isUnit(text: string): text is Exclude<TimeUnit, 'ticks'> {
+  return Object.hasOwn(UNIT_SECONDS, text)
 }

@@ -7,7 +7,7 @@ import { weightedMean } from './weighted-mean.ts'
 export const exponential: Law = {
   name: 'exponential',
   label: 'exponential',
-  formula: 'P(t) ∝ e^(−t/τ)',
+  formula: 'P(t) ∝ exp(−t/τ)',
   source: 'Cox and Lewis, The Statistical Analysis of Series of Events, Methuen (1966)',
   parameters: [TAU],
   coordinates: [{ name: 'rate', symbol: 'k', unit: '1/s', low: 0, high: Number.POSITIVE_INFINITY }],

@@ -15,7 +15,7 @@ const ALPHA = { name: 'alpha', symbol: 'α', unit: '', low: -2, high: STEEPEST_A
 export const powerCutoffDensity: Law = {
   name: 'power-cutoff-density',
   label: 'power law, cutoff in density form',
-  formula: 'P(t) ∝ t^−α e^(−t/τ)',
+  formula: 'P(t) ∝ t^−α exp(−t/τ)',
   source: 'Clauset, Shalizi and Newman, SIAM Rev. 51, 661 (2009), table 2.1',
   parameters: [ALPHA, TAU],
   coordinates: [ALPHA, KAPPA],

@@ -12,7 +12,7 @@ const ALPHA = { name: 'alpha', symbol: 'α', unit: '', low: 1, high: STEEPEST_AL
 export const powerCutoffSurvival: Law = {
   name: 'power-cutoff-survival',
   label: 'power law, cutoff in survival form',
-  formula: 'S(t) ∝ t^−(α−1) e^(−t/τ)',
+  formula: 'S(t) ∝ t^−(α−1) exp(−t/τ)',
   source: 'hazards of competing causes add: Cox, J. R. Stat. Soc. B 34, 187 (1972)',
   parameters: [ALPHA, TAU],
   coordinates: [ALPHA, KAPPA],

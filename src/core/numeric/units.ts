@@ -53,7 +53,7 @@ export function siDuration(seconds: number | null, digits = 3): string {
 
 /**
  * Estimate and interval as text: `1.52` and `[1.44, 1.61]`; a bound as `> 3.1 s`; `not available` when all are null.
- * Both are rounded by the standard error that the interval would have at 95 %, a quarter of its width.
+ * Both are rounded by the standard error on the narrower side: half the distance from the estimate to that limit at 95 %.
  */
 export function formatEstimate(value: {
   readonly estimate: number | null
@@ -68,7 +68,8 @@ export function formatEstimate(value: {
     return { text: `> ${roundTo(low, null, 2)}${suffix}`, interval: 'bound' }
   if (estimate === null)
     return { text: `< ${roundTo(high ?? Number.NaN, null, 2)}${suffix}`, interval: 'bound' }
-  const width = low !== null && high !== null ? (high - low) / 4 : null
+  const sides = [low, high].flatMap((limit) => (limit === null ? [] : [Math.abs(limit - estimate)]))
+  const width = sides.length === 0 ? null : Math.min(...sides) / 2
   const one = (x: number | null): string => (x === null ? '∞' : roundTo(x, width))
   return {
     text: `${roundTo(estimate, width)}${suffix}`,

@@ -1,7 +1,8 @@
 import { CENSORING, type DwellTable } from '../dwells/dwell-table.ts'
 import { GATE_CLASSES } from '../photons/gate.ts'
 
-const HEADER =
+/** First line of a dwell table as CSV. */
+export const DWELLS_HEADER =
   'emitter,start_s,duration_s,state,gate_at_start,gate_at_end,entry_age_s,censoring,spurious_probability'
 
 /** RFC 4180 quoting; a leading = + - @ is quoted with an apostrophe so that a spreadsheet does not run it. */
@@ -13,7 +14,7 @@ export function csvText(text: string): string {
 /** Dwell table as CSV text with a header; units in the column names; durations exact multiples of the bin. */
 export function dwellsCsv(emitter: string, table: DwellTable, withHeader = true): string {
   const name = csvText(emitter)
-  const lines: string[] = withHeader ? [HEADER] : []
+  const lines: string[] = withHeader ? [DWELLS_HEADER] : []
   const seconds = (bins: number): string => Number((bins * table.binSeconds).toPrecision(12)).toString()
   for (let row = 0; row < table.rows; row++) {
     lines.push(

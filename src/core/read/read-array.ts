@@ -1,5 +1,6 @@
 import { photonStreamBuilder } from '../photons/stream-builder.ts'
 import type { ByteSource } from './byte-source.ts'
+import { recordStart } from './record-start.ts'
 import { type ArrayAnswer, unitSeconds } from './import-answer.ts'
 import { type NpyHeader, readNpyHeader } from './npy-header.ts'
 import { readNpyValues } from './npy-values.ts'
@@ -59,6 +60,8 @@ async function readArrivals(
   let ticks = new Float64Array(0)
   let before = Number.NEGATIVE_INFINITY
   let rounded = 0
+  let firstTick = -1
+  let lastTick = 0
   const whole = await readNpyValues(source, header, hooks, (values, count, firstItem) => {
     if (ticks.length < count) ticks = new Float64Array(count)
     for (let i = 0; i < count; i++) {
@@ -89,13 +92,16 @@ async function readArrivals(
           `ticks are whole numbers, item ${firstItem + i} is ${time}. Choose a unit of time instead.`,
         )
       if (Math.abs(exact - tick) > 0.001) rounded++
+      if (firstTick < 0) firstTick = tick
+      lastTick = tick
       ticks[i] = tick
     }
     builder.push(ticks, null, count)
   })
   if (!whole) return null
-  const stream = builder.finish()
-  const notes = [`The record is taken to run from its first photon to its last; ${stream.photons} photons.`]
+  const { startTick, note } = recordStart(firstTick, lastTick)
+  const stream = builder.finish({ startTick })
+  const notes = [`${note}; ${stream.photons} photons.`]
   if (rounded > 0) notes.push(`${rounded} arrival times were rounded to ${tickSeconds} s.`)
   return { records: [{ name: stemOf(source), column: null, record: stream, gate: null }], notes }
 }

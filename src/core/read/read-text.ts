@@ -3,6 +3,7 @@ import { photonStreamBuilder } from '../photons/stream-builder.ts'
 import type { Trace } from '../photons/trace.ts'
 import type { ByteSource } from './byte-source.ts'
 import { growingCounts } from './growing-counts.ts'
+import { recordStart } from './record-start.ts'
 import { type ColumnRole, type TextAnswer, unitSeconds } from './import-answer.ts'
 import { failAtLine, failWhole } from './read-problem.ts'
 import type { ReadRecord } from './read-record.ts'
@@ -51,6 +52,8 @@ async function readArrivals(
   const lines = new Float64Array(BUFFER)
   let used = 0
   let rounded = 0
+  let firstTick = -1
+  let lastTick = 0
   let before = Number.NEGATIVE_INFINITY
   const flush = (): void => {
     const bad = builder.push(buffer, null, used)
@@ -94,6 +97,8 @@ async function readArrivals(
         )
       rounded++
     }
+    if (firstTick < 0) firstTick = tick
+    lastTick = tick
     buffer[used] = tick
     lines[used++] = line
     if (used === BUFFER) flush()
@@ -101,8 +106,9 @@ async function readArrivals(
   if (!whole) return null
   flush()
   if (builder.photons === 0) failWhole(source.name, 'the file holds no arrival times.')
-  const stream = builder.finish()
-  const notes = [`The record is taken to run from its first photon to its last; ${builder.photons} photons.`]
+  const { startTick, note } = recordStart(firstTick, lastTick)
+  const stream = builder.finish({ startTick })
+  const notes = [`${note}; ${builder.photons} photons.`]
   if (rounded > 0)
     notes.push(
       `${rounded} arrival times have more decimals than the first rows and were rounded to ${stream.tickSeconds} s.`,

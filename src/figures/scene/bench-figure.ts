@@ -74,6 +74,7 @@ export function benchFigure(input: BenchFigureInput): Scene {
     columns,
     excluded: input.excluded,
     letter: 'a',
+    spacing: 6 * FONT,
   })
   const { threshold } = input.numbers
   const histogram = recordHistogram(input.trace, histogramFrame, 'b')
@@ -89,6 +90,7 @@ export function benchFigure(input: BenchFigureInput): Scene {
       hover: null,
       domains,
       letter: state === 0 ? 'c' : 'd',
+      fontSize: FONT,
       confidence: input.confidence,
     }),
   )
@@ -113,7 +115,7 @@ export function benchFigure(input: BenchFigureInput): Scene {
     ...dwells,
   ]
   const bottom = plotFrame(1).y + lowerHeight + 24
-  const lines = captionLines(input, wide ? 128 : 62)
+  const lines = captionLines(input, wide ? 150 : 70)
   return {
     width,
     height: bottom + lines.length * FONT * 1.25 + 5,
@@ -140,7 +142,7 @@ function captionLines({ trace, numbers, name, confidence }: BenchFigureInput, wi
     `(${roundTo(numbers.countsAboveBaseline, null, 3)} above the ${numbers.baseline.method} baseline). ` +
     `α is the exponent of the density, P(t) ∝ t^−α; the law shown names the form of its cutoff τ. ` +
     `Lines: maximum likelihood with bin-exact probabilities, solid over the fitted range (off from ${off.fits.shortest.bins} bins, ` +
-    `on from ${on.fits.shortest.bins} bins); brackets: ${roundTo(100 * confidence, null, 3)} % profile-likelihood intervals. ` +
+    `on from ${on.fits.shortest.bins} bins); brackets: ${Number((100 * confidence).toPrecision(3))} % profile-likelihood intervals. ` +
     `Bars: exact Poisson. ${off.dwells.censored + on.dwells.censored} dwells cut and ${off.dwells.startUnseen + on.dwells.startUnseen} of unseen start.`
   const lines: string[] = []
   let line = ''

@@ -40,6 +40,8 @@ export interface DwellPanelInput {
   readonly yDomain: readonly [number, number]
   readonly letter: string
   readonly axisTitle: boolean
+  /** Distance of lines of the legend, figure units. */
+  readonly lineHeight: number
 }
 
 const Y_LABEL = {
@@ -146,10 +148,8 @@ export function dwellPanel(input: DwellPanelInput): Panel {
   }
 }
 
-const LINE_HEIGHT = 13.5
-
-function legendPlace({ frame }: DwellPanelInput, index: number): number {
-  const line = Math.min(LINE_HEIGHT, frame.height / 11)
+function legendPlace({ frame, lineHeight }: DwellPanelInput, index: number): number {
+  const line = Math.min(lineHeight, frame.height / 8)
   return (line * (index + 1.05)) / frame.height
 }
 

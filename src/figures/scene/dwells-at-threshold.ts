@@ -5,7 +5,7 @@ import { hazardTimesAge } from '../../core/dwells/hazard.ts'
 import { kaplanMeier } from '../../core/dwells/survival.ts'
 import type { Fit } from '../../core/fits/fit.ts'
 import { lawNamed } from '../../core/laws/all-laws.ts'
-import { formatEstimate, roundTo, siDuration } from '../../core/numeric/units.ts'
+import { formatEstimate, siDuration } from '../../core/numeric/units.ts'
 import type { StateFits, ThresholdProduct } from '../../core/pipeline/analysis-products.ts'
 import { rowOf, thresholdOf } from '../../core/pipeline/study-thresholds.ts'
 import { edgeShare } from '../../core/states/edge-share.ts'
@@ -35,6 +35,7 @@ export interface DwellsAtThreshold {
   readonly domains: DwellDomains
   readonly letter: string
   readonly confidence: number
+  readonly fontSize: number
 }
 
 const PER_DECADE = 7
@@ -111,6 +112,7 @@ export function dwellsAtThreshold(
     yDomain: domains.y,
     letter: options.letter,
     axisTitle: true,
+    lineHeight: 1.3 * options.fontSize,
   })
 }
 
@@ -208,6 +210,6 @@ export function legendOf(fit: Fit | null, sample: DwellSample, binSeconds: numbe
     const shown = text.startsWith('>') || text.startsWith('<') ? text : `= ${text}`
     lines.push(`${parameter.symbol} ${shown} ${interval === 'bound' ? '' : interval}`.trim())
   }
-  if (fit.weight !== null) lines.push(`weight ${roundTo(fit.weight, null, 2)}`)
+  if (fit.weight !== null) lines.push(`weight ${fit.weight < 0.005 ? '< 0.01' : fit.weight.toFixed(2)}`)
   return lines
 }

@@ -126,6 +126,8 @@ export interface RecordPanelOptions {
   readonly columns: TraceColumns
   readonly excluded: readonly (readonly [number, number])[]
   readonly letter: string
+  /** Room for one number of the time axis, figure units. */
+  readonly spacing: number
 }
 
 /** The trace panel of a record; `columns` must hold the window. */
@@ -148,6 +150,7 @@ export function recordPanel(product: TraceProduct, options: RecordPanelOptions):
     unsupported: unsupportedSpans(product),
     excluded: options.excluded,
     letter: options.letter,
+    timeTicks: Math.max(3, Math.round(options.frame.width / options.spacing)),
     description: `Trace from ${roundTo(window[0], null, 4)} to ${roundTo(window[1], null, 4)} s in bins of ${siDuration(levelled.binSeconds)}, ${baseline.method} baseline at ${roundTo(levelled.offCounts, null, 3)} counts per bin, on level ${roundTo(levelled.onCounts, null, 3)}.`,
   })
 }

@@ -24,6 +24,8 @@ export interface TracePanelInput {
   readonly excluded: readonly (readonly [number, number])[]
   readonly description: string
   readonly letter: string
+  /** About how many numbers on the time axis. */
+  readonly timeTicks: number
 }
 
 /** Counts per bin against time, without what moves with the threshold: see `thresholdMarks`. */
@@ -45,7 +47,13 @@ export function tracePanel(input: TracePanelInput): Panel {
   }
   return {
     frame: input.frame,
-    x: { kind: 'linear', domain: input.window, label: input.timeLabel, side: 'bottom', ticks: 8 },
+    x: {
+      kind: 'linear',
+      domain: input.window,
+      label: input.timeLabel,
+      side: 'bottom',
+      ticks: input.timeTicks,
+    },
     y: { kind: 'linear', domain: input.counts, label: input.countsLabel, side: 'left', ticks: 5 },
     marks,
     letter: input.letter,

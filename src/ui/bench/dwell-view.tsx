@@ -43,6 +43,7 @@ export function DwellView({ state, palette }: { state: 0 | 1; palette: Palette }
       hover: hover === null ? null : [(hover.lowBins - 0.5) * bin, (hover.highBins - 0.5) * bin],
       domains,
       letter: '',
+      fontSize: FONT_SIZE,
       confidence: recipeOf(session, now.emitter).fit.confidence,
     })
     paintScene(

@@ -35,6 +35,8 @@ export interface LiveReading {
 }
 
 const WAITING = '…'
+/** An artefact cutoff this many records long has no bearing on the record. */
+const FAR_RECORDS = 1000
 
 function line(
   key: string,
@@ -149,6 +151,7 @@ function stateReading(
   }
   const fit: Fit | null = fits === null ? null : (fits.fits[fits.shown] ?? null)
   const artefact = (state === 1 ? product.artefactCutoffOnSeconds : product.artefactCutoffOffSeconds)[row]
+  const named = artefact < FAR_RECORDS * product.table.usableBins * binSeconds
   const parameters = fit === null ? [] : Object.entries(fit.parameters)
   const slot = (index: number): ReadingLine => {
     const [name, value] = parameters[index] ?? []
@@ -199,8 +202,8 @@ function stateReading(
       line(
         'artefact',
         'Artefact cutoff',
-        Number.isFinite(artefact) && artefact < 1e9 ? siDuration(artefact) : 'none to speak of',
-        Number.isFinite(artefact) && artefact < 1e9 ? 'made by threshold errors alone' : '',
+        named ? siDuration(artefact) : 'none to speak of',
+        named ? 'made by threshold errors alone' : '',
         'artefact',
         reach !== null && artefact < 10 * reach
           ? 'Not ten times longer than the fitted cutoff: do not believe τ.'

@@ -73,6 +73,7 @@ export function UpperView({ palette }: { palette: Palette }) {
         columns,
         excluded: recipe.baseline.excludedSeconds,
         letter: '',
+        spacing: 6 * FONT_SIZE,
       }),
       recordHistogram(now.trace, layout.histogram, ''),
     ]

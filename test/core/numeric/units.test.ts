@@ -73,7 +73,7 @@ describe('formatEstimate', () => {
   it('writes bounds, open ends and nothing', () => {
     expect(formatEstimate({ estimate: null, low: 3.14, high: null, unit: 's' }).text).toBe('> 3.1 s')
     expect(formatEstimate({ estimate: null, low: null, high: 0.25, unit: '' }).text).toBe('< 0.25')
-    expect(formatEstimate({ estimate: 4, low: 2, high: null, unit: 's' }).interval).toBe('[2.00, ∞]')
+    expect(formatEstimate({ estimate: 4, low: 2, high: null, unit: 's' }).interval).toBe('[2.0, ∞]')
     expect(formatEstimate({ estimate: 4, low: null, high: null, unit: 's' })).toEqual({
       text: '4.00 s',
       interval: '',
