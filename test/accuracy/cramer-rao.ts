@@ -35,7 +35,7 @@ export function informationTable(
   const lag = 1 - 2 * edgeShare
   const bars = (coordinates: readonly number[]): Float64Array =>
     barSurvival(
-      law.at(coordinates, truth.shortestSeconds).logSurvival,
+      (t) => law.at(coordinates, truth.shortestSeconds).logSurvival(t),
       binSeconds,
       lag,
       shortestBins,

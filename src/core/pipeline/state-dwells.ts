@@ -1,4 +1,5 @@
 import type { DwellTable } from '../dwells/dwell-table.ts'
+import { GATE_CLASSES } from '../photons/gate.ts'
 
 /** Counts of the dwells of one state and how they were cut. */
 export interface StateDwells {
@@ -16,8 +17,12 @@ export interface StateDwells {
   readonly longestShare: number | null
 }
 
-/** Summary of one state's rows of a dwell table. */
+/**
+ * Summary of one state's rows of a dwell table; of a table cut at gate edges only the pieces inside windows of its
+ * class, as in `sampleFromDwells`. The last dwell and the time observed are of the whole record in any case.
+ */
 export function dwellSummary(table: DwellTable, state: 0 | 1): StateDwells {
+  const code = table.gate === 'all' ? -1 : GATE_CLASSES.indexOf(table.gate)
   let complete = 0
   let censored = 0
   let startUnseen = 0
@@ -32,13 +37,14 @@ export function dwellSummary(table: DwellTable, state: 0 | 1): StateDwells {
       lastBins = null
       continue
     }
-    totalBins += bins
     const age = bins + table.entryAgeBins[row]
     lastBins = age
+    if (code >= 0 && table.gateAtStart[row] !== code) continue
+    totalBins += bins
     if (age > longest) longest = age
-    const code = table.censoring[row]
-    if (code === 0) complete++
-    else if (code === 2) censored++
+    const kind = table.censoring[row]
+    if (kind === 0) complete++
+    else if (kind === 2) censored++
     else startUnseen++
   }
   return {

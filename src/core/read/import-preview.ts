@@ -121,7 +121,7 @@ const DELIMITER_WORDS = { '\t': 'tabs', ',': 'commas', ';': 'semicolons', ' ': '
 
 async function previewText(source: ByteSource): Promise<Preview> {
   const text = await firstText(source)
-  const controls = (text.match(/[\u0000-\u0008\u000e-\u001f]/g) ?? []).length
+  const controls = (text.match(/(?![\t\n\v\f\r])\p{Cc}/gu) ?? []).filter((c) => c < ' ').length
   if (controls > 0) return refused(source, 'the file is neither text nor a format this version reads.')
   const shape = textShape(text)
   if (shape === null)

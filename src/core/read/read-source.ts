@@ -52,7 +52,7 @@ async function readByKind(source: ByteSource, answer: ImportAnswer, hooks: RowHo
   if (answer.kind === 'npy') return readArray(source, answer, hooks)
   const half = (offset: number): RowHooks => ({
     onProgress: (fraction) => hooks.onProgress(offset + fraction / 2),
-    shouldStop: hooks.shouldStop,
+    shouldStop: () => hooks.shouldStop(),
   })
   const member = await npzMember(source, answer.member ?? '', half(0))
   return member === null ? null : readArray(member, answer, half(0.5))

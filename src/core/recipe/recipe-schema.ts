@@ -30,7 +30,7 @@ const RECIPE = v.strictObject({
     excludedSeconds: v.pipe(v.array(span), v.maxLength(1000)),
   }),
   threshold: v.strictObject({
-    rule: v.picklist(['crossing', 'sigma', 'least-variance', 'hand']),
+    rule: v.picklist(['half', 'crossing', 'sigma', 'least-variance', 'hand']),
     sigmas: within(0.5, 20),
     handCounts: v.nullable(whole(-100_000_000, 100_000_000)),
   }),

@@ -32,9 +32,25 @@ export function addDifference(difference: RecipeDifference, more: RecipeDifferen
   return merge(difference, more) as RecipeDifference
 }
 
+/** A difference with only those of its entries that a recipe has, their values taken from `resolved`. */
+export function knownDifference(difference: unknown, resolved: Recipe): RecipeDifference {
+  const { version: _, ...choices } = resolved
+  return known(difference, choices) as RecipeDifference
+}
+
+function known(difference: unknown, resolved: unknown): unknown {
+  if (!isPlain(difference) || !isPlain(resolved)) return resolved
+  const kept = Object.keys(resolved).filter((key) => Object.hasOwn(difference, key))
+  return Object.fromEntries(
+    kept.flatMap((key) =>
+      difference[key] === undefined ? [] : [[key, known(difference[key], resolved[key])] as const],
+    ),
+  )
+}
+
 /** What must be put on top of `base` to get `wanted`; empty when they are equal. */
 export function differenceOf(base: Recipe, wanted: Recipe): RecipeDifference {
-  return (differing(base, wanted) ?? {}) as RecipeDifference
+  return differing(base, wanted) ?? {}
 }
 
 function differing(base: unknown, wanted: unknown): unknown {

@@ -1,6 +1,6 @@
 import * as v from 'valibot'
 import { parseRecipe } from '../../core/recipe/recipe-schema.ts'
-import { resolveRecipe } from '../../core/recipe/resolve-recipe.ts'
+import { knownDifference, resolveRecipe } from '../../core/recipe/resolve-recipe.ts'
 import { parseImportAnswer } from '../../core/read/import-answer-schema.ts'
 import type { ImportAnswer } from '../../core/read/import-answer.ts'
 import { migrate } from './migrations.ts'
@@ -55,7 +55,11 @@ export function parseSession(value: unknown): SessionParsed {
     if (!resolved.ok) return { ok: false, problem: `Emitter “${emitter.name}”: ${resolved.problem}` }
     const origin = parseOrigin(emitter.origin)
     if (!origin.ok) return { ok: false, problem: `Emitter “${emitter.name}”: ${origin.problem}` }
-    emitters.push({ ...emitter, origin: origin.origin })
+    emitters.push({
+      ...emitter,
+      difference: knownDifference(emitter.difference, resolved.recipe),
+      origin: origin.origin,
+    })
   }
   const importAnswers: Record<string, ImportAnswer> = {}
   for (const [shape, remembered] of Object.entries(parsed.output.importAnswers)) {

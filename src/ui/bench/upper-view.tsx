@@ -84,7 +84,7 @@ export function UpperView({ palette }: { palette: Palette }) {
           app.results.getState().rows,
           countsDomain(now.trace),
           now.record[1] - now.record[0],
-          layout.stability as [typeof layout.trace, typeof layout.trace, typeof layout.trace],
+          layout.stability,
         ),
       )
     }

@@ -30,7 +30,7 @@ export interface AppModel {
   /** Files opened in this tab by SHA-256, also when storage refused them. */
   readonly filesInHand: Map<string, Blob>
   readonly saveStatus: () => SaveStatus
-  onSaveStatus(listener: () => void): () => void
+  readonly onSaveStatus: (listener: () => void) => () => void
   startGoodness(state: 0 | 1): { stop(): void; done: Promise<void> }
   setTheme(theme: Theme): void
 }

@@ -10,10 +10,10 @@ import { isSessionFile, openSessionFile } from './open-session.ts'
 import { ImportSheet } from './import-sheet.tsx'
 
 interface Incoming {
-  take(files: readonly File[]): void
-  dragOver(event: DragEvent): void
-  dragLeave(event: DragEvent): void
-  drop(event: DragEvent): void
+  readonly take: (files: readonly File[]) => void
+  readonly dragOver: (event: DragEvent) => void
+  readonly dragLeave: (event: DragEvent) => void
+  readonly drop: (event: DragEvent) => void
   readonly element: ReactNode
 }
 

@@ -52,7 +52,7 @@ let handNumber = 0
 
 function hire({ spawn, locks }: ClientOptions): Hand {
   const worker = spawn()
-  const service = wrap<AnalysisService>(worker as unknown as Worker)
+  const service = wrap<AnalysisService>(worker)
   let die = (): void => {}
   const dead = new Promise<void>((resolve) => {
     die = resolve
