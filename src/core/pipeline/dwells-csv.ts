@@ -5,10 +5,13 @@ import { GATE_CLASSES } from '../photons/gate.ts'
 export const DWELLS_HEADER =
   'emitter,start_s,duration_s,state,gate_at_start,gate_at_end,entry_age_s,censoring,spurious_probability'
 
-/** RFC 4180 quoting; a leading = + - @ is quoted with an apostrophe so that a spreadsheet does not run it. */
+/**
+ * RFC 4180 quoting; a leading = + - @ gets an apostrophe so that a spreadsheet does not run it. Semicolons and tabs
+ * are quoted too: where they separate columns, what follows one would lead its own cell.
+ */
 export function csvText(text: string): string {
-  const safe = /^[=+\-@\t\r]/.test(text) ? `'${text}` : text
-  return /[",\r\n]/.test(safe) ? `"${safe.replaceAll('"', '""')}"` : safe
+  const safe = /^[\s\0]*[=+\-@\uff0b\uff0d\uff1d\uff20]|^[\t\r\n]/.test(text) ? `'${text}` : text
+  return /[",;\t\r\n]/.test(safe) ? `"${safe.replaceAll('"', '""')}"` : safe
 }
 
 /** Dwell table as CSV text with a header; units in the column names; durations exact multiples of the bin. */
@@ -27,7 +30,7 @@ export function dwellsCsv(emitter: string, table: DwellTable, withHeader = true)
         GATE_CLASSES[table.gateAtEnd[row]] ?? '',
         seconds(table.entryAgeBins[row]),
         CENSORING[table.censoring[row]] ?? '',
-        table.spuriousProbability[row].toPrecision(3),
+        Number.isNaN(table.spuriousProbability[row]) ? '' : table.spuriousProbability[row].toPrecision(3),
       ].join(','),
     )
   }

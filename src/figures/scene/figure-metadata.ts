@@ -16,9 +16,10 @@ const OPEN = '<heliograph:figure xmlns:heliograph="urn:heliograph:figure:1">'
 const CLOSE = '</heliograph:figure>'
 const LARGEST_CHARACTERS = 4_000_000
 
-/** A metadata element with the JSON as escaped text. */
+/** A metadata element with the JSON as escaped text; characters that XML forbids stand as JSON escapes. */
 export function embedMetadata(metadata: FigureMetadata): string {
-  return `<metadata>${OPEN}${escapeXml(JSON.stringify(metadata))}${CLOSE}</metadata>`
+  const json = JSON.stringify(metadata).replaceAll('\ufffe', '\\ufffe').replaceAll('\uffff', '\\uffff')
+  return `<metadata>${OPEN}${escapeXml(json)}${CLOSE}</metadata>`
 }
 
 export type MetadataFound =

@@ -34,7 +34,7 @@ const STEPS: Readonly<Record<number, (session: Plain) => Plain>> = {
 
 export type Migrated =
   | { readonly ok: true; readonly value: unknown; readonly from: number }
-  | { readonly ok: false; readonly problem: string }
+  | { readonly ok: false; readonly problem: string; readonly newer?: true }
 
 /** Brings a saved session up to the present version, one numbered step at a time. */
 export function migrate(value: unknown): Migrated {
@@ -46,6 +46,7 @@ export function migrate(value: unknown): Migrated {
   if (from > SESSION_VERSION) {
     return {
       ok: false,
+      newer: true,
       problem: `The session was saved by a newer version (${from}; this one reads up to ${SESSION_VERSION}). Open it there.`,
     }
   }

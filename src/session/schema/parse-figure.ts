@@ -29,8 +29,14 @@ export function figureChoices({ recipe, emitter, threshold, window }: FigurePart
   if (!parsed.ok) return parsed
   const origin = parseOrigin(emitter.origin)
   if (!origin.ok) return origin
-  if (!Number.isInteger(threshold))
-    return { ok: false, problem: 'The threshold in the figure is not a whole number of counts.' }
+  // The threshold becomes a choice by hand, so it must be one that a saved session may hold.
+  const byHand = parseRecipe({
+    ...parsed.recipe,
+    threshold: { ...parsed.recipe.threshold, handCounts: threshold },
+  })
+  if (!byHand.ok) {
+    return { ok: false, problem: 'The threshold in the figure is not a whole number of counts within range.' }
+  }
   const span =
     Array.isArray(window) && window.length === 2 && window.every(Number.isFinite) && window[1] > window[0]
       ? ([window[0], window[1]] as const)

@@ -23,14 +23,15 @@ const SESSION = v.strictObject({
   currentEmitterId: v.nullable(text),
   view: v.strictObject({
     windows: v.record(text, v.tuple([v.pipe(v.number(), v.finite()), v.pipe(v.number(), v.finite())])),
-    dwellPlot: v.picklist(['density', 'survival', 'hazard']),
+    dwellPlot: v.picklist(['density', 'neighbour', 'survival', 'hazard', 'scan']),
   }),
   importAnswers: v.record(text, plainObject),
 })
 
 export type SessionParsed =
   | { readonly ok: true; readonly session: Session; readonly migratedFrom: number | null }
-  | { readonly ok: false; readonly problem: string }
+  /** `newer`: nothing is wrong with it, but only a later version of the program can tell. */
+  | { readonly ok: false; readonly problem: string; readonly newer?: true }
 
 /**
  * A session from storage or from a file: migrated step by step to this version, then checked whole. Nothing is

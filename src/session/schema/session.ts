@@ -6,7 +6,7 @@ import type { RecordOrigin } from './record-origin.ts'
 
 export const SESSION_VERSION = 2
 
-export type DwellPlot = 'density' | 'survival' | 'hazard'
+export type DwellPlot = 'density' | 'neighbour' | 'survival' | 'hazard' | 'scan'
 
 /** One emitter of a session: where its record is, and in what it differs from the session's recipe. */
 export interface EmitterEntry {

@@ -44,6 +44,9 @@ const LOCK = 'heliograph session'
 const SECOND_TAB =
   'This session is open in another tab, which may write it. Changes made here are not saved: close the other tab and reload, or save to a file.'
 
+const NEWER =
+  'The saved session belongs to a newer version of this program and is left as it is. Changes made here are not saved: save to a file.'
+
 function whyNotStored(error: unknown): string {
   const name = error instanceof Error || error instanceof DOMException ? error.name : ''
   if (name === 'QuotaExceededError') {
@@ -57,7 +60,8 @@ function whyNotStored(error: unknown): string {
  *
  * Invariants. 1. A save is acknowledged (`saved`) only after its transaction has completed, so that it survives the death
  * of the browser. 2. One transaction writes a whole session: a reader meets the old one or the new one. 3. Only the tab
- * that holds the lock writes. 4. An entry that cannot be read is moved aside, never overwritten.
+ * that holds the lock writes. 4. An entry that cannot be read is moved aside, never overwritten; one of a newer
+ * version stays where that version will look for it, and this page does not write.
  */
 export function sessionStore(surroundings: StoreSurroundings): SessionStore {
   const names = surroundings.names ?? { session: 'heliograph-session', raw: 'heliograph-raw' }
@@ -84,6 +88,7 @@ export function sessionStore(surroundings: StoreSurroundings): SessionStore {
     for (const listener of listeners) listener(status)
   }
   let writer = false
+  let refusal = SECOND_TAB
   let waiting: { session: Session; revision: number } | null = null
   let writing: Promise<void> | null = null
 
@@ -113,6 +118,8 @@ export function sessionStore(surroundings: StoreSurroundings): SessionStore {
         say({ kind: 'failed', sentence: whyNotStored(error) })
       }
     }
+    // In the same step as the last look at `waiting`: a save made between the two would wait for ever.
+    writing = null
   }
 
   return {
@@ -131,6 +138,12 @@ export function sessionStore(surroundings: StoreSurroundings): SessionStore {
       if (value === undefined) return { kind: 'none' }
       const parsed = parseSession(value)
       if (parsed.ok) return { kind: 'found', session: parsed.session }
+      if (parsed.newer === true) {
+        refusal = NEWER
+        writer = false
+        say({ kind: 'read-only', sentence: refusal })
+        return { kind: 'damaged', sentence: parsed.problem, keptAs: CURRENT }
+      }
       const keptAs = `${DAMAGED}${surroundings.now()}`
       if (writer) {
         try {
@@ -144,13 +157,11 @@ export function sessionStore(surroundings: StoreSurroundings): SessionStore {
     },
     save(session, revision) {
       if (!writer) {
-        say({ kind: 'read-only', sentence: SECOND_TAB })
+        say({ kind: 'read-only', sentence: refusal })
         return
       }
       waiting = { session, revision }
-      writing ??= drain().finally(() => {
-        writing = null
-      })
+      writing ??= drain()
     },
     async settled() {
       while (writing !== null) await writing
@@ -160,7 +171,7 @@ export function sessionStore(surroundings: StoreSurroundings): SessionStore {
       return () => listeners.delete(listener)
     },
     async putRaw(sha256, file) {
-      if (!writer) return { ok: false, sentence: SECOND_TAB }
+      if (!writer) return { ok: false, sentence: refusal }
       try {
         const kept = await withStore(names.raw, (store) => keys<string>(store))
         if (!kept.includes(sha256)) await withStore(names.raw, (store) => set(sha256, file, store))
@@ -178,9 +189,9 @@ export function sessionStore(surroundings: StoreSurroundings): SessionStore {
     },
     async damaged() {
       const all = await withStore(names.session, (store) => keys<string>(store))
-      const set_ = all.filter((key) => key.startsWith(DAMAGED))
+      const aside = all.filter((key) => key.startsWith(DAMAGED) || (key === CURRENT && refusal === NEWER))
       return Promise.all(
-        set_.map(async (key) => ({
+        aside.map(async (key) => ({
           key,
           value: await withStore(names.session, (store) => get<unknown>(key, store)),
         })),

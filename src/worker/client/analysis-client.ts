@@ -38,9 +38,12 @@ export interface AnalysisClient {
   close(): void
 }
 
-const STOPPED: Outcome<never> = { ok: false, sentence: 'Stopped.', stopped: true }
+const STOPPED = { ok: false, sentence: 'Stopped.', stopped: true } as const
 const DIED =
   'The analysis stopped unexpectedly (its worker died), probably for want of memory. Try a wider bin, or reload.'
+
+const DEFECT =
+  'The analysis failed for a reason it does not know; reload, and keep the record if it happens again'
 
 interface Hand {
   readonly service: Remote<AnalysisService>
@@ -135,12 +138,17 @@ export function analysisClient(options: ClientOptions): AnalysisClient {
       try {
         if (signal?.aborted === true) return STOPPED
         for (let attempt = 0; attempt < 2; attempt++) {
+          if (closed) return STOPPED
           const hand = benchHand()
           const outcome = await Promise.race([work(hand.service, job), stopped, hand.dead.then(() => null)])
           if (outcome !== null) return outcome
-          if (closed) return STOPPED
         }
-        return { ok: false, sentence: DIED }
+        return closed ? STOPPED : { ok: false, sentence: DIED }
+      } catch (error) {
+        return {
+          ok: false,
+          sentence: `${DEFECT} (${error instanceof Error ? error.message : String(error)}).`,
+        }
       } finally {
         signal?.removeEventListener('abort', abort)
         if (lanes.get(lane) === entry) lanes.delete(lane)
@@ -159,6 +167,7 @@ export function analysisClient(options: ClientOptions): AnalysisClient {
         while (next < slices.length && !signal.aborted) {
           const at = next++
           for (let attempt = 0; attempt < 2; attempt++) {
+            if (closed) throw new Error(STOPPED.sentence)
             const hand = poolHand(index)
             const value = await Promise.race([
               slices[at](hand.service).then((result) => ({ result })),
