@@ -35,8 +35,8 @@ export function lawComparisons(fits: StateFits, sample: DwellSample): LawCompari
       p: result.p,
       sentence:
         result.p < TELLING
-          ? `A cutoff improves on the plain power law (p = ${result.p.toPrecision(2)}).`
-          : `These dwells do not show a cutoff (p = ${result.p.toPrecision(2)}).`,
+          ? `${lawNamed(cutoff.law).label} against plain power law: the cutoff improves the fit (p = ${result.p.toPrecision(2)}).`
+          : `${lawNamed(cutoff.law).label} against plain power law: no cutoff is shown (p = ${result.p.toPrecision(2)}).`,
     })
   }
   const shown = fits.fits[fits.shown]
@@ -45,6 +45,7 @@ export function lawComparisons(fits: StateFits, sample: DwellSample): LawCompari
     if (rival.law === shown.law || nested(rival.law, shown.law)) continue
     const result = vuong(shown, rival, sample)
     if (result === null) continue
+    const pair = `${lawNamed(shown.law).label} against ${lawNamed(rival.law).label}`
     const name = lawNamed(result.z > 0 ? shown.law : rival.law).label
     rows.push({
       first: shown.law,
@@ -54,8 +55,8 @@ export function lawComparisons(fits: StateFits, sample: DwellSample): LawCompari
       p: result.p,
       sentence:
         result.p < TELLING
-          ? `The dwells favour ${name} (p = ${result.p.toPrecision(2)}).`
-          : `${shown.complete} dwells cannot tell the two apart (p = ${result.p.toPrecision(2)}).`,
+          ? `${pair}: the dwells favour ${name} (p = ${result.p.toPrecision(2)}).`
+          : `${pair}: ${shown.complete} dwells cannot tell them apart (p = ${result.p.toPrecision(2)}).`,
     })
   }
   return rows

@@ -202,21 +202,46 @@ function drawEnvelope(
   surface.rectangles(rectangles.subarray(0, used), palette[mark.role])
 }
 
-function drawStates(mark: Extract<Mark, { kind: 'states' }>, { surface, palette, frame }: MarkContext): void {
+function drawStates(
+  mark: Extract<Mark, { kind: 'states' }>,
+  { surface, palette, frame, hairline }: MarkContext,
+): void {
   const { states, columns, thickness } = mark
   const width = frame.width / columns
   const y = frame.y + frame.height - thickness
-  const boxes: number[][] = [[], [], []]
+  const boxes: number[][] = [[], [], [], [], []]
   let from = 0
   for (let column = 1; column <= columns; column++) {
     if (column < columns && states[column] === states[from]) continue
     const kind = states[from]
-    if (kind <= 2) boxes[kind].push(frame.x + from * width, y, (column - from) * width, thickness)
+    if (kind <= 4) boxes[kind].push(frame.x + from * width, y, (column - from) * width, thickness)
     from = column
   }
   surface.rectangles(boxes[0], palette['off-soft'])
   surface.rectangles(boxes[1], palette.on)
   surface.rectangles(boxes[2], palette['on-soft'])
+  for (const [kind, role] of [
+    [3, 'off'],
+    [4, 'on'],
+  ] as const) {
+    for (let i = 0; i < boxes[kind].length; i += 4) {
+      const [x, top, w, h] = boxes[kind].slice(i, i + 4)
+      const o = 0.5 * hairline
+      const corners = [
+        x + o,
+        top + o,
+        x + w - o,
+        top + o,
+        x + w - o,
+        top + h - o,
+        x + o,
+        top + h - o,
+        x + o,
+        top + o,
+      ]
+      surface.polyline(corners, palette[role], hairline, [])
+    }
+  }
 }
 
 function hatch(

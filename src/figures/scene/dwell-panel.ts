@@ -10,7 +10,7 @@ export interface DwellPoints {
 export interface DwellPanelInput {
   readonly frame: Frame
   readonly state: 'on' | 'off'
-  readonly plot: 'density' | 'survival' | 'hazard'
+  readonly plot: 'density' | 'neighbour' | 'survival' | 'hazard'
   /** Points with exact bars (density, hazard). */
   readonly points: DwellPoints
   /** Upper limits where nothing was seen. */
@@ -34,6 +34,8 @@ export interface DwellPanelInput {
   /** Durations pointed at, s. */
   readonly hover: readonly [number, number] | null
   readonly cut: ArrayLike<number>
+  /** Numbers at risk under the survival curve: durations (s) and numbers. */
+  readonly atRisk: { readonly seconds: ArrayLike<number>; readonly numbers: ArrayLike<number> } | null
   /** Lines of text in the upper right corner: n, law, numbers. */
   readonly legend: readonly string[]
   readonly xDomain: readonly [number, number]
@@ -46,6 +48,7 @@ export interface DwellPanelInput {
 
 const Y_LABEL = {
   density: 'P(t)  (s⁻¹)',
+  neighbour: 'P(t), neighbour-spaced  (s⁻¹)',
   survival: 'S(t)',
   hazard: 't · hazard',
 } as const
@@ -122,6 +125,14 @@ export function dwellPanel(input: DwellPanelInput): Panel {
     hollow: state === 'off',
     radius: 3.2,
   })
+  if (input.atRisk !== null) {
+    const { seconds, numbers } = input.atRisk
+    for (let i = 0; i < seconds.length; i++) {
+      const x = Math.log(seconds[i] / input.xDomain[0]) / Math.log(input.xDomain[1] / input.xDomain[0])
+      marks.push({ kind: 'text', x, y: 0.965, text: String(numbers[i]), anchor: 'middle', role: 'soft' })
+    }
+    marks.push({ kind: 'text', x: 0.985, y: 0.9, text: 'numbers at risk', anchor: 'end', role: 'soft' })
+  }
   for (const [index, text] of input.legend.entries()) {
     marks.push({
       kind: 'text',

@@ -1,4 +1,4 @@
-import { binnedDensity } from '../../core/dwells/density.ts'
+import { binnedDensity, neighbourDensity } from '../../core/dwells/density.ts'
 import { sampleFromRow } from '../../core/dwells/dwell-sample-of.ts'
 import type { DwellSample } from '../../core/dwells/dwell-sample.ts'
 import { hazardTimesAge } from '../../core/dwells/hazard.ts'
@@ -107,6 +107,7 @@ export function dwellsAtThreshold(
     shortestSeconds: shortest === null ? null : shortest * binSeconds * (1 - 0.5 / shortest),
     hover: options.hover,
     cut: sample.censoredBins.map((bins) => bins * binSeconds),
+    atRisk: km === null ? null : atDecades(km, domains.x),
     legend: legendOf(fit, sample, binSeconds),
     xDomain: domains.x,
     yDomain: domains.y,
@@ -119,6 +120,15 @@ export function dwellsAtThreshold(
 function pointsOf(sample: DwellSample, plot: DwellPlotKind, confidence: number) {
   const empty = { seconds: [], values: [], lows: null, highs: null }
   if (plot === 'survival') return empty
+  if (plot === 'neighbour') {
+    const points = neighbourDensity(sample)
+    return {
+      seconds: points.map(({ seconds }) => seconds),
+      values: points.map(({ density }) => density),
+      lows: null,
+      highs: null,
+    }
+  }
   const rows =
     plot === 'density'
       ? binnedDensity(sample, PER_DECADE, confidence)
@@ -131,6 +141,19 @@ function pointsOf(sample: DwellSample, plot: DwellPlotKind, confidence: number) 
     lows: rows.map(({ low }) => low),
     highs: rows.map(({ high }) => high),
   }
+}
+
+/** Numbers at risk at whole powers of ten of the axis. */
+function atDecades(km: ReturnType<typeof kaplanMeier>, [from, to]: readonly [number, number]) {
+  const seconds: number[] = []
+  const numbers: number[] = []
+  for (let decade = Math.ceil(Math.log10(from * 1.2)); decade <= Math.log10(to / 1.2); decade++) {
+    const at = 10 ** decade
+    const next = km.seconds.findIndex((t) => t >= at * (1 - 1e-9))
+    seconds.push(at)
+    numbers.push(next < 0 ? 0 : Math.round(km.atRisk[next]))
+  }
+  return { seconds, numbers }
 }
 
 function limitsOf(sample: DwellSample, plot: DwellPlotKind) {

@@ -19,7 +19,7 @@ const POINTS = 72
  */
 export function fitCurve(
   fit: Fit,
-  plot: 'density' | 'survival' | 'hazard',
+  plot: 'density' | 'neighbour' | 'survival' | 'hazard',
   share: number,
   from: number,
   to: number,
@@ -41,7 +41,7 @@ export function fitCurve(
     const lnDensity = law.logDensity(t)
     const lnSurvival = law.logSurvival(t)
     values[i] =
-      plot === 'density'
+      plot === 'density' || plot === 'neighbour'
         ? share * Math.exp(lnDensity - atStart)
         : plot === 'survival'
           ? share * Math.exp(lnSurvival - atStart)

@@ -113,7 +113,7 @@ export type Mark =
       readonly columns: number
       readonly role: Role
     }
-  /** State per column of the frame's width: 0 off, 1 on, 2 both, 255 gap; drawn as a strip at the bottom. */
+  /** State per column of the frame's width: 0 off, 1 on, 2 both, 3 off and 4 on of a cut dwell (hollow), 255 gap; a strip at the bottom. */
   | {
       readonly kind: 'states'
       readonly states: Uint8Array

@@ -72,6 +72,24 @@ export function fillStates(into: TraceColumns, threshold: number): void {
   }
 }
 
+/** First and last dwell of the record are cut by it: their columns, where visible, become hollow. */
+function markCut(
+  into: TraceColumns,
+  { levelled, bins }: TraceProduct,
+  window: readonly [number, number],
+): void {
+  const { states, columns } = into
+  const end = levelled.startSeconds + bins * levelled.binSeconds
+  if (window[0] <= levelled.startSeconds) {
+    const state = states[0]
+    for (let i = 0; i < columns && states[i] === state && state <= 1; i++) states[i] = 3 + state
+  }
+  if (window[1] >= end - 1e-9) {
+    const state = states[columns - 1]
+    for (let i = columns - 1; i >= 0 && states[i] === state && state <= 1; i--) states[i] = 3 + state
+  }
+}
+
 /** Count axis of a record: room above the highest bin, 0 at the bottom. */
 export function countsDomain({ levelled }: TraceProduct): [number, number] {
   return [Math.min(0, levelled.offset), Math.max(5, levelled.highest * 1.04 + 1)]
@@ -164,6 +182,7 @@ export function recordThresholdMarks(
   stripThickness: number,
 ): Mark[] {
   fillStates(columns, threshold)
+  markCut(columns, product, window)
   const line =
     product.baseline.method === 'constant'
       ? null

@@ -13,7 +13,8 @@ export function domainsOf(app: AppModel, plot: DwellPlot): DwellDomains | null {
   const kept = keptDomains.get(now.product.table) ?? new Map<string, DwellDomains>()
   keptDomains.set(now.product.table, kept)
   const key = `${plot} ${now.product.group}`
-  const domains = kept.get(key) ?? dwellDomains(now.product, now.trace.levelled, plot)
+  const domains =
+    kept.get(key) ?? dwellDomains(now.product, now.trace.levelled, plot === 'scan' ? 'density' : plot)
   kept.set(key, domains)
   return domains
 }

@@ -2,6 +2,7 @@ import { type PointerEvent, useRef, useState } from 'react'
 import { paintScene } from '../../figures/paint/canvas.ts'
 import { valueAt } from '../../figures/scene/coordinates.ts'
 import { dwellsAtThreshold } from '../../figures/scene/dwells-at-threshold.ts'
+import { scanPanel } from '../../figures/scene/scan-panel.ts'
 import type { Palette } from '../../figures/scene/palette.ts'
 import { rowOf } from '../../core/pipeline/study-thresholds.ts'
 import { recipeOf } from '../../state/choices/session-changes.ts'
@@ -33,13 +34,39 @@ export function DwellView({ state, palette }: { state: 0 | 1; palette: Palette }
     const exact = now.settled?.threshold === now.threshold ? now.settled : null
     const hover = view.hover?.state === state ? view.hover : null
     const bin = now.trace.levelled.binSeconds
+    const liveShortest = view.liveShortest?.state === state ? view.liveShortest.bins : null
+    if (plot === 'scan') {
+      const bins = liveShortest ?? exact?.states[state].fits.shortest.bins ?? null
+      const scan = scanPanel({
+        frame: dwellFrame(canvas.width, canvas.height),
+        state: state === 1 ? 'on' : 'off',
+        rows: exact?.states[state].scan ?? [],
+        shortestSeconds: bins === null ? null : bins * bin,
+        xDomain: domains.x,
+        letter: '',
+      })
+      paintScene(
+        {
+          width: canvas.width,
+          height: canvas.height,
+          unit: 'px',
+          fontSize: FONT_SIZE,
+          hairline: 1,
+          panels: [scan],
+          notes: [],
+        },
+        ink.current,
+        context,
+      )
+      return
+    }
     const panel = dwellsAtThreshold(now.product, now.trace.levelled, {
       frame: dwellFrame(canvas.width, canvas.height),
       state,
       plot,
       threshold: now.threshold,
       fits: exact?.states[state].fits ?? app.results.getState().rows.get(row)?.states[state] ?? null,
-      liveShortestBins: view.liveShortest?.state === state ? view.liveShortest.bins : null,
+      liveShortestBins: liveShortest,
       hover: hover === null ? null : [(hover.lowBins - 0.5) * bin, (hover.highBins - 0.5) * bin],
       domains,
       letter: '',

@@ -184,7 +184,7 @@ function stateReading(
       ),
       line(
         'law',
-        'Law shown',
+        'Law',
         fit === null ? WAITING : lawNamed(fit.law).label,
         fit?.weight == null ? '' : `weight ${roundTo(fit.weight, null, 2)}`,
         'weights',

@@ -7,8 +7,18 @@ import { Segments } from '../controls/segments.tsx'
 
 const PLOTS: readonly { value: DwellPlot; label: string; hint: string }[] = [
   { value: 'density', label: 'Density', hint: 'Counts per width, exact Poisson bars' },
+  {
+    value: 'neighbour',
+    label: 'Neighbour',
+    hint: 'Density with neighbour spacing (Kuno et al. 2001); a picture, not for fitting',
+  },
   { value: 'survival', label: 'Survival', hint: 'Product-limit estimate with censored dwells' },
   { value: 'hazard', label: 't × hazard', hint: 'Flat for a power law, rises at a cutoff' },
+  {
+    value: 'scan',
+    label: 'α by shortest',
+    hint: 'The shown law’s first parameter against the shortest fitted dwell',
+  },
 ]
 
 /** Which form of the dwell plots is shown, and the goodness-of-fit tests. */

@@ -15,6 +15,37 @@ export function pointAtTrace(app: AppModel, share: number | null): void {
   app.loop.request('upper-live', 'dwells')
 }
 
+/** Visible bins beyond which dwells of a pointed-at duration are not looked for. */
+const MOST_VISIBLE_BINS = 250_000
+const MOST_SPANS = 400
+
+/** Dwells in the visible window whose duration is pointed at in a plot, s; empty when too many bins are visible. */
+export function hoveredSpans(
+  { trace, threshold, window }: BenchNow,
+  hover: Hover | null,
+): [number, number][] {
+  if (hover === null || threshold === null) return []
+  if (hover.startSeconds !== null && hover.endSeconds !== null)
+    return [[hover.startSeconds, hover.endSeconds]]
+  const { values, offset, binSeconds, startSeconds } = trace.levelled
+  const from = Math.max(0, Math.floor((window[0] - startSeconds) / binSeconds))
+  const to = Math.min(values.length, Math.ceil((window[1] - startSeconds) / binSeconds))
+  if (to - from > MOST_VISIBLE_BINS) return []
+  const level = threshold - offset
+  const spans: [number, number][] = []
+  let start = from
+  for (let i = from + 1; i <= to && spans.length < MOST_SPANS; i++) {
+    const on = values[start] >= level
+    if (i < to && values[i] >= level === on) continue
+    const length = i - start
+    if ((on ? 1 : 0) === hover.state && length >= hover.lowBins && length < hover.highBins) {
+      spans.push([startSeconds + start * binSeconds, startSeconds + i * binSeconds])
+    }
+    start = i
+  }
+  return spans
+}
+
 function dwellAt({ trace, threshold, window }: BenchNow, share: number): Hover | null {
   if (threshold === null) return null
   const { values, offset, binSeconds, startSeconds } = trace.levelled

@@ -19,6 +19,7 @@ import { CanvasLayer, type CanvasSize } from '../bridge/canvas-layer.tsx'
 import { benchNow } from './bench-state.ts'
 import { ThresholdHandle } from './threshold-handle.tsx'
 import { TraceGestures } from './trace-gestures.tsx'
+import { hoveredSpans } from './trace-hover.ts'
 import { FONT_SIZE, upperLayout } from './upper-layout.ts'
 
 const STATE_STRIP = 5
@@ -101,9 +102,8 @@ export function UpperView({ palette }: { palette: Palette }) {
     const y = { kind: 'linear', domain: counts, ...bare } as const
     const { hover } = app.view.getState()
     const marks = recordThresholdMarks(now.trace, columns, now.window, now.threshold, STATE_STRIP)
-    if (hover?.startSeconds != null && hover.endSeconds !== null) {
-      marks.unshift({ kind: 'span', from: hover.startSeconds, to: hover.endSeconds, fill: 'hover' })
-    }
+    for (const [from, to] of hoveredSpans(now, hover))
+      marks.unshift({ kind: 'span', from, to, fill: 'hover' })
     const panel = (
       frame: typeof layout.trace,
       own: Panel['marks'],

@@ -61,7 +61,7 @@ export async function takeAway(app: AppModel, kind: TakeAwayKind): Promise<strin
     product: now.product,
     numbers: settled.value,
     window: now.window,
-    plot: session.view.dwellPlot,
+    plot: session.view.dwellPlot === 'scan' ? 'density' : session.view.dwellPlot,
     name: emitter.name,
     excluded: recipe.baseline.excludedSeconds,
     confidence: recipe.fit.confidence,
