@@ -60,3 +60,17 @@ export function withoutEmitter(session: Session, emitterId: string): Session {
     currentEmitterId: session.currentEmitterId === emitterId ? next : session.currentEmitterId,
   }
 }
+
+/**
+ * Another bin width for all emitters. Thresholds and shortest dwells set by hand are in counts and bins of the old
+ * width and mean nothing at the new one: they go back to the rule, in the same step of undo.
+ */
+export function withBin(session: Session, binSeconds: number): Session {
+  const emitters = session.emitters.map((emitter) => {
+    const { threshold: _threshold, fit, ...kept } = emitter.difference
+    if (fit === undefined) return { ...emitter, difference: kept }
+    const { shortest: _shortest, ...fitKept } = fit
+    return { ...emitter, difference: Object.keys(fitKept).length === 0 ? kept : { ...kept, fit: fitKept } }
+  })
+  return withRecipe({ ...session, emitters }, { bin: { seconds: binSeconds } })
+}

@@ -6,6 +6,7 @@ import type { RecipeDifference } from '../../core/recipe/resolve-recipe.ts'
 import {
   currentEmitter,
   recipeOf,
+  withBin,
   withDifference,
   withoutDifference,
   withRecipe,
@@ -64,7 +65,9 @@ export function ChoicesRail() {
           low={0.001}
           high={10_000}
           step={1}
-          onChange={(value) => all(`bin ${value} ms`, { bin: { seconds: value / 1000 } })}
+          onChange={(value) =>
+            app.choices.change({ label: `bin ${value} ms` }, (before) => withBin(before, value / 1000))
+          }
         />
         {trace === null ? null : (
           <p className="aside">
