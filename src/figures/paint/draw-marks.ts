@@ -99,7 +99,7 @@ export function drawMark(mark: Mark, context: MarkContext): void {
           mark.across === 'x'
             ? along + (right ? -1 : 1) * 3 * hairline
             : frame.x + frame.width - 3 * hairline,
-          mark.across === 'x' ? frame.y + context.fontSize : along - 3 * hairline,
+          mark.across === 'x' ? bottom - 1.9 * context.fontSize : along - 3 * hairline,
           {
             size: context.fontSize * 0.92,
             colour: palette[mark.stroke.role],

@@ -8,7 +8,13 @@ import { parseOrigin } from './origin-schema.ts'
 import { type EmitterEntry, type Session, SESSION_VERSION } from './session.ts'
 
 const text = v.pipe(v.string(), v.maxLength(4096))
-const plainObject = v.record(text, v.unknown())
+// A record would take a list for an empty object.
+const notList = v.pipe(
+  v.unknown(),
+  v.check((value) => !Array.isArray(value), 'expected an object, received a list'),
+)
+const plainObject = v.pipe(notList, v.record(text, v.unknown()))
+const number = v.pipe(v.number(), v.finite())
 
 const SESSION = v.strictObject({
   version: v.literal(SESSION_VERSION),
@@ -22,10 +28,10 @@ const SESSION = v.strictObject({
   ),
   currentEmitterId: v.nullable(text),
   view: v.strictObject({
-    windows: v.record(text, v.tuple([v.pipe(v.number(), v.finite()), v.pipe(v.number(), v.finite())])),
+    windows: v.pipe(notList, v.record(text, v.strictTuple([number, number]))),
     dwellPlot: v.picklist(['density', 'neighbour', 'survival', 'hazard', 'scan']),
   }),
-  importAnswers: v.record(text, plainObject),
+  importAnswers: v.pipe(notList, v.record(text, plainObject)),
 })
 
 export type SessionParsed =

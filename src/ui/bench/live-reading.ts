@@ -186,7 +186,7 @@ function stateReading(
         'law',
         'Law',
         fit === null ? WAITING : lawNamed(fit.law).label,
-        fit?.weight == null ? '' : `weight ${roundTo(fit.weight, null, 2)}`,
+        fit?.weight == null ? '' : `weight ${fit.weight < 0.005 ? '< 0.01' : fit.weight.toFixed(2)}`,
         'weights',
         fit !== null && fit.message !== '' ? fit.message : null,
       ),
