@@ -93,7 +93,7 @@ export const anySession: fc.Arbitrary<Session> = fc
     current: fc.nat(11),
     windows: fc.array(fc.tuple(fc.double({ noNaN: true, min: -1e6, max: 1e6 }), fc.nat(1000))),
     dwellPlot: fc.constantFrom('density' as const, 'survival' as const, 'hazard' as const),
-    answers: fc.dictionary(fc.stringMatching(/^[a-z;, ]{1,20}$/), anyAnswer, { maxKeys: 4 }),
+    answers: fc.dictionary(fc.stringMatching(/^text[a-z;, ]{1,20}$/), anyAnswer, { maxKeys: 4 }),
   })
   .map(({ id, name, recipe, emitters, current, windows, dwellPlot, answers }) => ({
     version: 2 as const,
