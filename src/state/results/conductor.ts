@@ -146,10 +146,8 @@ export function conductor(
         const began = timer.milliseconds()
         const outcome = await calls.rowFits(await requestFor(here.emitter, here.recipe), rows)
         if (key !== rowsKey) continue
-        if (!outcome.ok) {
-          if (outcome.stopped === true) continue
-          return
-        }
+        // Stopped though still wanted: nobody computes any more. The next change of choices asks again.
+        if (!outcome.ok) return
         millisecondsPerRow = 0.5 * millisecondsPerRow + (0.5 * (timer.milliseconds() - began)) / rows.length
         const next = new Map(results.getState().rows)
         for (const fits of outcome.value) next.set(fits.row, fits)
