@@ -48,6 +48,7 @@ export function extractMetadata(svg: string): MetadataFound {
     one === null ||
     typeof one !== 'object' ||
     typeof one.recipe !== 'object' ||
+    one.recipe === null ||
     typeof one.emitter?.name !== 'string' ||
     typeof one.threshold !== 'number'
   ) {
