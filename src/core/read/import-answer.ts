@@ -60,7 +60,7 @@ export function missingAnswers(answer: ImportAnswer): ('timeUnit' | 'binSeconds'
     const counted = has('counts') || has('rate-cps') || has('rate-kcps')
     if (!counted && !has('arrival')) missing.push('columns')
     if ((has('time') || has('arrival')) && !unitKnown) missing.push('timeUnit')
-    if (counted && !has('time') && !binKnown) missing.push('binSeconds')
+    if (counted && !has('time') && !has('arrival') && !binKnown) missing.push('binSeconds')
     return missing
   }
   if (answer.content === null) missing.push('content')

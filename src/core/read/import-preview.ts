@@ -3,9 +3,10 @@ import { asciiText } from './decimal.ts'
 import { type ArrayAnswer, type ImportAnswer, missingAnswers, type TimeUnit } from './import-answer.ts'
 import { isNpy, type NpyHeader, readNpyHeader } from './npy-header.ts'
 import { readNpyValues } from './npy-values.ts'
-import { isZip, memberHeader, npzMembers } from './npz-members.ts'
+import { npzMembers } from './npz-members.ts'
 import { ReadFailure, type ReadProblem } from './read-problem.ts'
 import { type TextShape, textShape } from './text-shape.ts'
+import { isZip } from './zip-directory.ts'
 
 /** A question the file does not answer; the answer goes into the field of the same name. */
 export interface ImportQuestion {
@@ -76,14 +77,14 @@ function decodeUtf8(bytes: Uint8Array): string {
 /** Looks at the beginning of a file and proposes how to read it. Never throws on data: see `problem`. */
 export async function previewSource(source: ByteSource): Promise<Preview> {
   try {
-    if (source.size === 0) return refused(source, 'the file is empty.')
+    if (source.size === 0) return refused(source, 'the file is empty. Choose a file with data.')
     const head = await source.read(0, Math.min(source.size, 16))
     if (isNpy(head)) return await previewNpy(source)
     if (isZip(head)) return await previewNpz(source)
     if (/\.np[yz]$/i.test(source.name))
       return refused(
         source,
-        'the name says NumPy, but the file does not begin like one. It is damaged or misnamed.',
+        'the name says NumPy, but the file does not begin like one. Save the array again, or rename the file if it is text.',
       )
     if (head[0] === 0x89 && asciiText(head, 1, 4) === 'HDF')
       return refused(
@@ -122,7 +123,11 @@ const DELIMITER_WORDS = { '\t': 'tabs', ',': 'commas', ';': 'semicolons', ' ': '
 async function previewText(source: ByteSource): Promise<Preview> {
   const text = await firstText(source)
   const controls = (text.match(/(?![\t\n\v\f\r])\p{Cc}/gu) ?? []).filter((c) => c < ' ').length
-  if (controls > 0) return refused(source, 'the file is neither text nor a format this version reads.')
+  if (controls > 0)
+    return refused(
+      source,
+      'the file is neither text nor a format this version reads. Export it as delimited text or .npy.',
+    )
   const shape = textShape(text)
   if (shape === null)
     return refused(
@@ -180,17 +185,16 @@ async function previewNpy(source: ByteSource): Promise<Preview> {
 }
 
 async function previewNpz(source: ByteSource): Promise<Preview> {
-  const members = (await npzMembers(source)).filter(({ head }) => isNpy(head))
+  const members = await npzMembers(source)
   if (members.length === 0)
     return refused(
       source,
       'the archive holds no NumPy arrays. A session file is opened by dropping it, not as data.',
     )
   const [first] = members
-  const header = await memberHeader(`${source.name}: ${first.name}`, first.head)
   return previewOfArray(
     source,
-    header,
+    first.header,
     { kind: 'npz', member: first.name },
     false,
     members.map(({ name }) => name),

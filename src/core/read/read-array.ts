@@ -55,7 +55,7 @@ async function readArrivals(
     failWhole(source.name, 'the unit of the arrival times is not known. Choose it before opening the file.')
   const real = header.kind === 'f' && answer.timeUnit !== 'ticks'
   const tickSeconds = real ? Math.min(unit, FLOAT_TICK_SECONDS) : unit
-  const scale = real ? unit / tickSeconds : 1
+  const scale = real ? Math.round(unit / tickSeconds) : 1
   const builder = photonStreamBuilder(tickSeconds)
   let ticks = new Float64Array(0)
   let before = Number.NEGATIVE_INFINITY
@@ -67,9 +67,14 @@ async function readArrivals(
     for (let i = 0; i < count; i++) {
       const time = values[i]
       const at = header.dataStart + (firstItem + i) * header.itemBytes
-      if (!Number.isFinite(time)) failAtByte(source.name, at, `item ${firstItem + i} is ${time}, not a time.`)
+      if (!Number.isFinite(time))
+        failAtByte(source.name, at, `item ${firstItem + i} is ${time}, not a time. Remove it before saving.`)
       if (time < 0)
-        failAtByte(source.name, at, `item ${firstItem + i} is ${time}; arrival times start at 0 or later.`)
+        failAtByte(
+          source.name,
+          at,
+          `item ${firstItem + i} is ${time}; arrival times start at 0 or later. Shift the times.`,
+        )
       if (time < before)
         failAtByte(
           source.name,
@@ -83,7 +88,7 @@ async function readArrivals(
         failAtByte(
           source.name,
           at,
-          `item ${firstItem + i} (${time}) is too large for a resolution of ${tickSeconds} s.`,
+          `item ${firstItem + i} (${time}) is too large for a resolution of ${tickSeconds} s. Choose a coarser unit.`,
         )
       if (!real && tick !== time)
         failAtByte(

@@ -7,7 +7,7 @@ import { failWhole, ReadFailure } from './read-problem.ts'
 import type { ReadOutcome } from './read-record.ts'
 import { readText } from './read-text.ts'
 import type { RowHooks } from './text-rows.ts'
-import { splitRow, textShape } from './text-shape.ts'
+import { commentMark, splitRow } from './text-shape.ts'
 import { decimalsOf } from './decimal.ts'
 
 const STOPPED: ReadOutcome = {
@@ -40,13 +40,18 @@ export async function readSource(
     return read === null ? STOPPED : { ok: true, ...read }
   } catch (error) {
     if (error instanceof ReadFailure) return { ok: false, problem: error.problem }
+    // The engine says this when an array does not fit; data that large are read in parts.
+    if (error instanceof RangeError && /alloc|array.*length/i.test(error.message)) {
+      const sentence = `“${source.name}”: there is not enough memory for it. Split the file or close other tabs.`
+      return { ok: false, problem: { sentence, file: source.name, line: null, byte: null } }
+    }
     throw error
   }
 }
 
 async function readByKind(source: ByteSource, answer: ImportAnswer, hooks: RowHooks) {
   if (answer.kind === 'text') {
-    if (source.size === 0) failWhole(source.name, 'the file is empty.')
+    if (source.size === 0) failWhole(source.name, 'the file is empty. Choose a file with data.')
     return readText(source, answer, hooks, await firstNumbers(source, answer))
   }
   if (answer.kind === 'npy') return readArray(source, answer, hooks)
@@ -62,10 +67,16 @@ async function readByKind(source: ByteSource, answer: ImportAnswer, hooks: RowHo
 async function firstNumbers(source: ByteSource, answer: Extract<ImportAnswer, { kind: 'text' }>) {
   const column = answer.columns.findIndex((role) => role === 'time' || role === 'arrival')
   const text = await firstText(source)
-  if (column < 0 || textShape(text) === null) return { step: null, decimals: 0 }
+  if (column < 0) return { step: null, decimals: 0 }
   const times: number[] = []
   let decimals = 0
+  let headers = answer.headerLines
   for (const line of text.split(/\r\n|\n|\r/)) {
+    if (line.trim() === '' || commentMark(line, answer.delimiter)) continue
+    if (headers > 0) {
+      headers--
+      continue
+    }
     const field = splitRow(line, answer.delimiter)[column]
     if (field === undefined || field === '') continue
     const value = Number(answer.decimalComma ? field.replace(',', '.') : field)

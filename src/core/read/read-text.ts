@@ -15,8 +15,9 @@ const MOST_COUNTS = 0xffffffff
 const RATE_TOLERANCE = 0.02
 /** A time may miss its place on the grid by this share of a step. */
 const STEP_TOLERANCE = 0.3
-/** Rows that may be missing at once; more is taken for a broken time axis. */
-const LONGEST_GAP = 10_000_000
+/** Missing bins, over all columns, that any file may have, and more for each of its bytes: a broken time axis must not cost memory. */
+const FREE_MISSING = 1_000_000
+const MISSING_PER_BYTE = 4
 const BUFFER = 1 << 16
 
 export interface TextRead {
@@ -61,7 +62,7 @@ async function readArrivals(
       failAtLine(
         source.name,
         lines[bad - builder.photons] ?? 0,
-        'the arrival time is too large for its resolution.',
+        'the arrival time is too large for its resolution. Choose a coarser unit.',
       )
     used = 0
   }
@@ -86,7 +87,7 @@ async function readArrivals(
       failAtLine(
         source.name,
         line,
-        `the arrival time ${time} is too large for a resolution of ${unit / scale} s.`,
+        `the arrival time ${time} is too large for a resolution of ${unit / scale} s. Correct the line or choose a coarser unit.`,
       )
     if (Math.abs(ticks - tick) > 1e-6 * Math.max(1, ticks * 1e-9)) {
       if (answer.timeUnit === 'ticks')
@@ -105,10 +106,16 @@ async function readArrivals(
   })
   if (!whole) return null
   flush()
-  if (builder.photons === 0) failWhole(source.name, 'the file holds no arrival times.')
+  if (builder.photons === 0)
+    failWhole(source.name, 'the file holds no arrival times. Choose a file with data.')
   const { startTick, note } = recordStart(firstTick, lastTick)
   const stream = builder.finish({ startTick })
   const notes = [`${note}; ${builder.photons} photons.`]
+  const unused = answer.columns.filter((role) => role !== 'arrival' && role !== 'ignore').length
+  if (unused > 0)
+    notes.push(
+      `Beside the arrival times, ${unused} ${unused === 1 ? 'column was' : 'columns were'} not used.`,
+    )
   if (rounded > 0)
     notes.push(
       `${rounded} arrival times have more decimals than the first rows and were rounded to ${stream.tickSeconds} s.`,
@@ -149,7 +156,7 @@ async function readCounts(
       source.name,
       timeColumn < 0
         ? 'the bin width is not known. Give it before opening the file.'
-        : 'the time column does not advance in its first rows.',
+        : 'the time column does not advance in its first rows. Choose another column for the time, or none.',
     )
   }
   const columns = answer.columns.flatMap((role, column): CountColumn[] =>
@@ -165,6 +172,7 @@ async function readCounts(
   let start = 0
   let before = Number.NaN
   let firstGapLine = 0
+  let missingCells = 0
   let gateSince = -1
 
   const whole = await readRows(source, answer, hooks, (values, line) => {
@@ -188,8 +196,13 @@ async function readCounts(
           )
         }
         missing = Math.round(steps) - 1
-        if (missing > LONGEST_GAP)
-          failAtLine(source.name, line, `the time jumps over ${missing} bins. Split the file there.`)
+        missingCells += missing * columns.length
+        if (missingCells > FREE_MISSING + MISSING_PER_BYTE * source.size)
+          failAtLine(
+            source.name,
+            line,
+            `the time jumps over ${missing} bins, far more than the file holds. Correct the time or split the file there.`,
+          )
       }
       before = time
     }
@@ -205,7 +218,11 @@ async function readCounts(
     if (gateColumn >= 0) {
       const gate = values[gateColumn]
       if (gate !== 0 && gate !== 1)
-        failAtLine(source.name, line, `a gate column holds 0 and 1, found ${gate}.`)
+        failAtLine(
+          source.name,
+          line,
+          `a gate column holds 0 and 1, found ${gate}. Correct the line or ignore the column.`,
+        )
       if (gate === 1 && gateSince < 0) gateSince = index
       if (gate === 0 && gateSince >= 0) {
         windows.push(windowOf(gateSince, index, start * unit, binSeconds))
@@ -214,7 +231,7 @@ async function readCounts(
     }
   })
   if (!whole) return null
-  if (index < 0) failWhole(source.name, 'the file holds no rows of numbers.')
+  if (index < 0) failWhole(source.name, 'the file holds no rows of numbers. Choose a file with data.')
   if (gateSince >= 0) windows.push(windowOf(gateSince, index + 1, start * unit, binSeconds))
   // The mean step over the whole file is finer than that of two rounded times.
   const exactBin = timeColumn >= 0 && index > 0 ? ((before - start) * unit) / index : binSeconds
@@ -278,9 +295,14 @@ function countOf(
       line,
       role === 'counts'
         ? `column ${column + 1} holds ${value}; counts are whole numbers. If it is a rate, choose counts per second.`
-        : `column ${column + 1}: the rate ${value} times the bin of ${binSeconds} s is ${raw.toPrecision(6)}, not a whole number of counts.`,
+        : `column ${column + 1}: the rate ${value} times the bin of ${binSeconds} s is ${raw.toPrecision(6)}, not a whole number of counts. Correct the unit of the rate or of the times.`,
     )
   }
-  if (count > MOST_COUNTS) failAtLine(file, line, `column ${column + 1} holds ${value}, more than a bin can.`)
+  if (count > MOST_COUNTS)
+    failAtLine(
+      file,
+      line,
+      `column ${column + 1} holds ${value}, more than a bin can. Correct the line or the reading of columns.`,
+    )
   return count
 }

@@ -74,12 +74,20 @@ export async function readRows(
             `expected a number in column ${column + 1}, found ${quoted(asciiText(bytes, first, last))}. Correct the line or the reading of columns.`,
           )
         }
+        if (value === Number.POSITIVE_INFINITY || value === Number.NEGATIVE_INFINITY)
+          failAtLine(
+            source.name,
+            line,
+            `the number ${quoted(asciiText(bytes, first, last))} in column ${column + 1} is too large. Correct the line.`,
+          )
         values[column] = value
       }
       column++
       if (spaces) while (i + 1 < end && (bytes[i + 1] === 32 || bytes[i + 1] === 9)) i++
       start = i + 1
     }
+    // Some programs end every row with a separator.
+    if (column === values.length + 1 && !spaces && bytes[end - 1] === separator) column--
     if (column !== values.length) {
       failAtLine(
         source.name,
@@ -111,7 +119,11 @@ export async function readRows(
     }
     carry = bytes.slice(from)
     if (carry.length > LONGEST_LINE)
-      failAtLine(source.name, line + 1, 'the line is longer than a megabyte: this is not a table of numbers.')
+      failAtLine(
+        source.name,
+        line + 1,
+        'the line is longer than a megabyte: this is not a table of numbers. Choose another file.',
+      )
     if (last) {
       if (carry.length > 0) {
         line++

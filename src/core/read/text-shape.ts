@@ -29,16 +29,21 @@ const COMMA_NUMBER = /^[+-]?(?:\d+,?\d*|,\d+)(?:[eE][+-]?\d+)?$/
 
 export function splitRow(line: string, delimiter: string): string[] {
   const text = line.trim()
-  return delimiter === ' '
-    ? text.split(/[ \t]+/)
-    : (delimiter === '\t' ? line.replace(/^ +| +$/g, '') : text).split(delimiter).map((field) => field.trim())
+  if (delimiter === ' ') return text.split(/[ \t]+/)
+  const fields = (delimiter === '\t' ? line.replace(/^ +| +$/g, '') : text)
+    .split(delimiter)
+    .map((field) => field.trim())
+  // Some programs end every row with a separator.
+  if (fields.length > 1 && fields[fields.length - 1] === '') fields.pop()
+  return fields
 }
 
 function isNumber(field: string, decimalComma: boolean): boolean {
   return (decimalComma ? COMMA_NUMBER : NUMBER).test(field)
 }
 
-function commentMark(line: string, delimiter: string): boolean {
+/** Whether a line is a comment: `#`, `%`, `//`, and `;` where it does not separate columns. */
+export function commentMark(line: string, delimiter: string): boolean {
   return /^\s*(#|%|\/\/)/.test(line) || (delimiter !== ';' && /^\s*;/.test(line))
 }
 
@@ -70,7 +75,7 @@ function roleIn(name: string): ColumnRole | null {
   if (/gate|field|beam|shutter/i.test(name)) return 'gate'
   if (/kcps|kHz|kilocounts/i.test(name)) return 'rate-kcps'
   if (/\bcps\b|counts?\s*(per|\/)\s*s(ec(ond)?)?\b|\bHz\b|rate/i.test(name)) return 'rate-cps'
-  if (/^\s*(t|time|zeit|temps)\b/i.test(name)) return 'time'
+  if (/^\s*(t|time|zeit|temps)(?![a-z])/i.test(name)) return 'time'
   if (/count|intens|photons|signal|emitter|dot|trace/i.test(name)) return 'counts'
   return null
 }
@@ -108,7 +113,7 @@ function shapeIn(
     ?.replace(/^\s*(#|%|\/\/|;)+\s*/, '')
   const named =
     headerLines > 0 ? split[headerLines - 1] : comment === undefined ? [] : splitRow(comment, delimiter)
-  const header = named.length === width ? named : []
+  const header = named.length === width ? named.map((name) => name.replace(/^(["'])(.*)\1$/, '$2')) : []
   return {
     score,
     shape: describe(
@@ -152,7 +157,7 @@ function describe(
   })
   const timed = columns.findIndex((role) => role === 'time' || role === 'arrival')
   const unit = timed < 0 ? null : unitIn(header[timed] ?? '')
-  const decimals = timed < 0 ? 0 : Math.max(0, ...rows.map((row) => decimalsOf(row[timed])))
+  const decimals = timed < 0 ? 0 : rows.reduce((most, row) => Math.max(most, decimalsOf(row[timed])), 0)
   const counted = columns.findIndex((role) => role === 'counts')
   const binSeconds =
     columns.includes('time') || counted < 0 ? null : (binIn(header[counted] ?? '') ?? binIn(comment))

@@ -74,7 +74,9 @@ describe('dialects', () => {
   })
   it('reads separators left at the ends of rows', async () => {
     expect(countsIn(await readGiven(textSource('time_s,n,\n0,1,\n0.1,2,\n0.2,3,\n')))).toEqual([[1, 2, 3]])
-    expect(countsIn(await readGiven(textSource('time_s\tn\t\n0\t1\t\n0.1\t2\t\n0.2\t3\t\n')))).toEqual([[1, 2, 3]])
+    expect(countsIn(await readGiven(textSource('time_s\tn\t\n0\t1\t\n0.1\t2\t\n0.2\t3\t\n')))).toEqual([
+      [1, 2, 3],
+    ])
   })
 })
 
@@ -93,7 +95,9 @@ describe('units', () => {
   it('counts without times ask for the bin unless it is said', async () => {
     const preview = await previewSource(textSource('5\n3\n9\n0\n'))
     expect(preview.questions.map((q) => q.key)).toContain('binSeconds')
-    expect(countsIn(await readGiven(textSource('5\n3\n9\n0\n'), { binSeconds: 0.005 }))).toEqual([[5, 3, 9, 0]])
+    expect(countsIn(await readGiven(textSource('5\n3\n9\n0\n'), { binSeconds: 0.005 }))).toEqual([
+      [5, 3, 9, 0],
+    ])
     const said = await readGiven(textSource('counts per 10 ms\n5\n3\n9\n0\n'))
     expect(said.ok && said.records[0].record).toMatchObject({ binSeconds: 0.01 })
   })
@@ -126,7 +130,9 @@ describe('arrival times', () => {
     const rows = Array.from({ length: 60_000 }, (_, i) => `${i}.5`)
     const text = `arrival (us)\n${rows.join('\n')}\n60000.5125\n60000.75\n`
     const outcome = await readGiven(textSource(text))
-    expect(outcome.ok && outcome.notes.join(' ')).toMatch(/^.*60002 photons\. 2 arrival times have more decimals/)
+    expect(outcome.ok && outcome.notes.join(' ')).toMatch(
+      /^.*60002 photons\. 2 arrival times have more decimals/,
+    )
   })
   it('says which columns are not used', async () => {
     const outcome = await readGiven(textSource('arrival (us),counts\n1,5\n2,6\n4,7\n'))
@@ -159,24 +165,88 @@ describe('bad input gets one sentence with the line', () => {
     ['header only', 'time_s,n\n', 'no line of it is a row of numbers. Expected columns of numbers'],
     ['words', 'hello\nworld\n', 'no line of it is a row of numbers.'],
     ['comments only', '# a\n# b\n', 'no line of it is a row of numbers.'],
-    ['ragged, short', 'time_s,n\n0,1\n1,2\n2\n3,4\n', 'line 4: expected 2 columns, found 1. Correct the line'],
-    ['ragged, long', 'time_s,n\n0,1\n1,2\n2,3,4\n3,4\n', 'line 4: expected 2 columns, found 3. Correct the line'],
-    ['empty cell', 'time_s,n\n0,1\n1,\n2,3\n', 'line 3: expected a number in column 2, found “”. Correct the line'],
-    ['NaN', 'time_s,n\n0,1\n1,NaN\n2,3\n', 'line 3: expected a number in column 2, found “NaN”. Correct the line'],
-    ['inf', 'time_s,n\n0,1\n1,inf\n2,3\n', 'line 3: expected a number in column 2, found “inf”. Correct the line'],
-    ['overflow', 'time_s,n\n0,1\n1,1e999\n2,3\n', 'line 3: the number “1e999” in column 2 is too large. Correct the line'],
-    ['negative', 'time_s,n\n0,1\n1,-4\n2,3\n', 'line 3: column 2 holds -4; counts cannot be negative. If a background was subtracted, use the counts from before.'],
-    ['fractional', 'time_s,counts\n0,1\n1,1.5\n2,3\n', 'line 3: column 2 holds 1.5; counts are whole numbers. If it is a rate, choose counts per second.'],
-    ['rate not whole', 'time_s,rate\n0,1\n1,1.5\n2,3\n', 'line 3: column 2: the rate 1.5 times the bin of 1 s is 1.50000, not a whole number of counts. Correct the unit of the rate or of the times.'],
-    ['too many', 'time_s,n\n0,1\n1,5e9\n2,3\n', 'line 3: column 2 holds 5000000000, more than a bin can. Correct the line or the reading of columns.'],
-    ['backwards', 'time_s,n\n0,1\n2,2\n4,3\n3,4\n6,5\n', 'line 5: the time 3 is not later than the one before (4). Sort the file'],
-    ['standing', 'time_s,n\n0,1\n2,2\n4,3\n4,4\n6,5\n', 'line 5: the time 4 is not later than the one before (4). Sort the file'],
-    ['uneven', 'time_s,n\n0,1\n2,2\n4,3\n5,4\n6,5\n8,6\n10,7\n', 'line 5: the time advances by 0.500 steps of 2; bins must be even. If these are arrival times, read the column as such.'],
-    ['arrival backwards', 'arrival (us)\n1\n3\n2\n', 'line 4: the arrival time 2 is earlier than the one before (3). Sort the file'],
+    [
+      'ragged, short',
+      'time_s,n\n0,1\n1,2\n2\n3,4\n',
+      'line 4: expected 2 columns, found 1. Correct the line',
+    ],
+    [
+      'ragged, long',
+      'time_s,n\n0,1\n1,2\n2,3,4\n3,4\n',
+      'line 4: expected 2 columns, found 3. Correct the line',
+    ],
+    [
+      'empty cell',
+      'time_s,n\n0,1\n1,\n2,3\n',
+      'line 3: expected a number in column 2, found “”. Correct the line',
+    ],
+    [
+      'NaN',
+      'time_s,n\n0,1\n1,NaN\n2,3\n',
+      'line 3: expected a number in column 2, found “NaN”. Correct the line',
+    ],
+    [
+      'inf',
+      'time_s,n\n0,1\n1,inf\n2,3\n',
+      'line 3: expected a number in column 2, found “inf”. Correct the line',
+    ],
+    [
+      'overflow',
+      'time_s,n\n0,1\n1,1e999\n2,3\n',
+      'line 3: the number “1e999” in column 2 is too large. Correct the line',
+    ],
+    [
+      'negative',
+      'time_s,n\n0,1\n1,-4\n2,3\n',
+      'line 3: column 2 holds -4; counts cannot be negative. If a background was subtracted, use the counts from before.',
+    ],
+    [
+      'fractional',
+      'time_s,counts\n0,1\n1,1.5\n2,3\n',
+      'line 3: column 2 holds 1.5; counts are whole numbers. If it is a rate, choose counts per second.',
+    ],
+    [
+      'rate not whole',
+      'time_s,rate\n0,1\n1,1.5\n2,3\n',
+      'line 3: column 2: the rate 1.5 times the bin of 1 s is 1.50000, not a whole number of counts. Correct the unit of the rate or of the times.',
+    ],
+    [
+      'too many',
+      'time_s,n\n0,1\n1,5e9\n2,3\n',
+      'line 3: column 2 holds 5000000000, more than a bin can. Correct the line or the reading of columns.',
+    ],
+    [
+      'backwards',
+      'time_s,n\n0,1\n2,2\n4,3\n3,4\n6,5\n',
+      'line 5: the time 3 is not later than the one before (4). Sort the file',
+    ],
+    [
+      'standing',
+      'time_s,n\n0,1\n2,2\n4,3\n4,4\n6,5\n',
+      'line 5: the time 4 is not later than the one before (4). Sort the file',
+    ],
+    [
+      'uneven',
+      'time_s,n\n0,1\n2,2\n4,3\n5,4\n6,5\n8,6\n10,7\n',
+      'line 5: the time advances by 0.500 steps of 2; bins must be even. If these are arrival times, read the column as such.',
+    ],
+    [
+      'arrival backwards',
+      'arrival (us)\n1\n3\n2\n',
+      'line 4: the arrival time 2 is earlier than the one before (3). Sort the file',
+    ],
     ['arrival negative', 'arrival (us)\n-1\n3\n', 'line 2: the arrival time -1 is negative. Shift the times'],
-    ['arrival too large', 'arrival (us)\n1\n1e300\n', 'line 3: the arrival time 1e+300 is too large for a resolution of'],
+    [
+      'arrival too large',
+      'arrival (us)\n1\n1e300\n',
+      'line 3: the arrival time 1e+300 is too large for a resolution of',
+    ],
     ['one row', 'time_s,n\n0,1\n', 'the time column does not advance in its first rows. '],
-    ['gate', 'time_s,n,gate\n0,1,0\n1,1,2\n2,1,0\n', 'line 3: a gate column holds 0 and 1, found 2. Correct the line'],
+    [
+      'gate',
+      'time_s,n,gate\n0,1,0\n1,1,2\n2,1,0\n',
+      'line 3: a gate column holds 0 and 1, found 2. Correct the line',
+    ],
   ]
   for (const [word, text, sentence] of CASES) {
     it(word, async () => {
@@ -184,7 +254,10 @@ describe('bad input gets one sentence with the line', () => {
     })
   }
   it('fractional ticks', async () => {
-    const outcome = await readGiven(textSource('arrival\n1\n2.5\n4\n'), { timeUnit: 'ticks', tickSeconds: 1e-8 })
+    const outcome = await readGiven(textSource('arrival\n1\n2.5\n4\n'), {
+      timeUnit: 'ticks',
+      tickSeconds: 1e-8,
+    })
     expect(problemIn(outcome)).toContain('line 3: ticks are whole numbers, found 2.5. Choose a unit of time')
   })
   it('binary taken for text', async () => {
