@@ -4,6 +4,7 @@ import type { Recipe } from '../recipe/recipe.ts'
 import { recipeHash } from '../recipe/recipe-hash.ts'
 import type { ThresholdProduct, TraceProduct } from './analysis-products.ts'
 import type { BenchNumbers, StateNumbers } from './emitter-numbers.ts'
+import { rowOf, thresholdOf } from './study-thresholds.ts'
 
 /** Estimate as it stands in the document: null where it does not exist. */
 type DocumentEstimate = Pick<Estimate, 'estimate' | 'low' | 'high'>
@@ -107,10 +108,12 @@ export function emitterResult(
   name: string,
   source: EmitterResult['source'],
   trace: TraceProduct,
-  product: Pick<ThresholdProduct, 'byRule'>,
+  product: Pick<ThresholdProduct, 'byRule' | 'table'>,
   numbers: BenchNumbers,
 ): EmitterResult {
   const { binSeconds } = trace.levelled
+  // Where the table has steps of several counts, numbers are those of the row nearest to the rule's threshold.
+  const ruled = thresholdOf(product.table, rowOf(product.table, product.byRule.counts))
   return {
     name,
     source,
@@ -132,7 +135,7 @@ export function emitterResult(
       longestUnsupportedSeconds: numbers.baseline.longestUnsupportedSeconds,
     },
     threshold: {
-      rule: product.byRule.counts === numbers.threshold ? product.byRule.rule : 'hand',
+      rule: ruled === numbers.threshold ? product.byRule.rule : 'hand',
       countsPerBin: numbers.threshold,
       countsAboveBaseline: numbers.countsAboveBaseline,
       falseOnPerBin: numbers.falseOnPerBin,
