@@ -40,7 +40,8 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
     )
   const lengthBytes = version === 1 ? 2 : 4
   const headerStart = 8 + lengthBytes
-  if (start.length < headerStart) failAtByte(source.name, 8, 'the file ends inside its header.')
+  if (start.length < headerStart)
+    failAtByte(source.name, 8, 'the file ends inside its header. It is cut short; copy it again.')
   const length =
     version === 1
       ? start[8] | (start[9] << 8)
@@ -49,7 +50,7 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
     failAtByte(
       source.name,
       8,
-      `the header claims ${length} bytes; the file has ${source.size}. The file is damaged or not a NumPy array.`,
+      `the header claims ${length} bytes; the file has ${source.size}. The file is damaged or not a NumPy array; copy it again.`,
     )
   }
   const bytes = await source.read(headerStart, headerStart + length)
@@ -63,7 +64,7 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
     failAtByte(
       source.name,
       headerStart,
-      'the header lacks descr, fortran_order or shape. The file is damaged.',
+      'the header lacks descr, fortran_order or shape. The file is damaged; copy it again or save it anew.',
     )
   }
   const type = /^([<>|=])([iufb])([1248])$/.exec(descr)
@@ -74,15 +75,14 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
       `type ${quoted(descr)} is not read; integers, booleans and real numbers are. Convert with astype().`,
     )
   }
-  const parts = shapeText
-    .split(',')
-    .map((part) => part.trim())
-    .filter((part) => part !== '')
+  const parts = shapeText.split(',').map((part) => part.trim())
+  // `(3,)` and `()`.
+  if (parts[parts.length - 1] === '') parts.pop()
   if (!parts.every((part) => /^\d{1,15}$/.test(part)))
     failAtByte(
       source.name,
       headerStart,
-      `the shape (${shapeText.slice(0, 40)}) is not a list of whole numbers. The file is damaged.`,
+      `the shape (${shapeText.slice(0, 40)}) is not a list of whole numbers. The file is damaged; copy it again or save it anew.`,
     )
   const shape = parts.map(Number)
   if (shape.length === 0 || shape.length > 2)
@@ -93,12 +93,12 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
   const items = shape.reduce((product, size) => product * size, 1)
   const itemBytes = Number(type[3]) as NpyHeader['itemBytes']
   const dataStart = headerStart + length
-  if (items === 0) failWhole(source.name, 'the array is empty.')
+  if (items === 0) failWhole(source.name, 'the array is empty. Save an array with data.')
   if (items * itemBytes !== source.size - dataStart) {
     failAtByte(
       source.name,
       dataStart,
-      `the header promises ${items} numbers of ${itemBytes} bytes, the file holds ${source.size - dataStart} bytes of data. It is cut short or damaged.`,
+      `the header promises ${items} numbers of ${itemBytes} bytes, the file holds ${source.size - dataStart} bytes of data. It is cut short or damaged; copy it again.`,
     )
   }
   return {

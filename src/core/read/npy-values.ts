@@ -63,7 +63,11 @@ export async function readNpyValues(
     const at = dataStart + first * itemBytes
     const bytes = await source.read(at, at + count * itemBytes)
     if (bytes.length !== count * itemBytes)
-      failAtByte(source.name, at + bytes.length, 'the file ends before its data do.')
+      failAtByte(
+        source.name,
+        at + bytes.length,
+        'the file ends before its data do. Was it changed while it was read? Open it again.',
+      )
     const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength)
     for (let i = 0; i < count; i++) values[i] = read(view, i * itemBytes, littleEndian)
     onBlock(values, count, first)

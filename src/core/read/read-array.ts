@@ -147,7 +147,7 @@ async function readCounts(
         failAtByte(
           source.name,
           header.dataStart + item * header.itemBytes,
-          `item (${row}, ${column}) is ${value}; counts are whole numbers of 0 or more. If a background was subtracted, use the counts from before.`,
+          `item (${row}, ${column}) is ${value}; counts are whole numbers of 0 or more, below 2^32. If a background was subtracted, use the counts from before.`,
         )
       }
       const emitter = byRows ? row : column

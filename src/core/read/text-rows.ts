@@ -1,7 +1,7 @@
 import type { ByteSource } from './byte-source.ts'
 import { asciiText, parseDecimal } from './decimal.ts'
 import type { TextAnswer } from './import-answer.ts'
-import { failAtLine, quoted } from './read-problem.ts'
+import { failAtByte, failAtLine, quoted } from './read-problem.ts'
 
 const BLOCK_BYTES = 4 << 20
 /** A line longer than this is not a row of numbers. */
@@ -26,13 +26,15 @@ export function isComment(bytes: Uint8Array, at: number, end: number, delimiter:
 /**
  * Calls `onRow(values, line)` for every row of numbers, in order. `values` is one buffer that is used again; it has as many
  * entries as the answer has columns, ignored ones NaN. Fails at the first line that is not such a row. CR, LF and CRLF
- * end lines; blank lines and comments are passed over. Stops early when told; returns false then.
+ * end lines; blank lines and comments are passed over. Stops early when told; returns false then. The file is read in
+ * blocks of `blockBytes`.
  */
 export async function readRows(
   source: ByteSource,
   answer: TextAnswer,
   hooks: RowHooks,
   onRow: (values: Float64Array, line: number) => void,
+  blockBytes = BLOCK_BYTES,
 ): Promise<boolean> {
   const { delimiter, columns } = answer
   const separator = delimiter.charCodeAt(0)
@@ -43,6 +45,7 @@ export async function readRows(
   let line = 0
   let headers = answer.headerLines
   let carry = new Uint8Array(0)
+  let begun = false
 
   const row = (bytes: Uint8Array, from: number, to: number): void => {
     let at = from
@@ -64,8 +67,8 @@ export async function readRows(
       if (column < values.length && wanted[column]) {
         let first = start
         let last = i
-        while (first < last && bytes[first] === 32) first++
-        while (last > first && bytes[last - 1] === 32) last--
+        while (first < last && (bytes[first] === 32 || bytes[first] === 9)) first++
+        while (last > first && (bytes[last - 1] === 32 || bytes[last - 1] === 9)) last--
         const value = parseDecimal(bytes, first, last, point)
         if (Number.isNaN(value)) {
           failAtLine(
@@ -100,13 +103,24 @@ export async function readRows(
 
   for (let at = 0; at < source.size || carry.length > 0; ) {
     if (hooks.shouldStop()) return false
-    const block = await source.read(at, Math.min(source.size, at + BLOCK_BYTES))
+    const block = await source.read(at, Math.min(source.size, at + blockBytes))
+    if (block.length === 0 && at < source.size)
+      failAtByte(
+        source.name,
+        at,
+        'the file ends before its data do. Was it changed while it was read? Open it again.',
+      )
     at += block.length
-    const last = at >= source.size || block.length === 0
+    const last = at >= source.size
     const bytes = new Uint8Array(carry.length + block.length)
     bytes.set(carry)
     bytes.set(block, carry.length)
-    let from = at === block.length && bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0
+    if (bytes.length < 3 && !last) {
+      carry = bytes
+      continue
+    }
+    let from = !begun && bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0
+    begun = true
     for (let i = from; i < bytes.length; i++) {
       const byte = bytes[i]
       if (byte !== 10 && byte !== 13) continue
