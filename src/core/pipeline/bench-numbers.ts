@@ -9,6 +9,7 @@ import { spuriousSafeBins } from '../states/spurious-runs.ts'
 import { statesAt } from '../states/states-at.ts'
 import type { ThresholdProduct } from './analysis-products.ts'
 import { lawComparisons } from './law-comparisons.ts'
+import { bleachCheck } from './bleach-check.ts'
 import { fitState } from './fit-row.ts'
 import { flagsOf } from './flags.ts'
 import { mixedBins } from './mixed-bins.ts'
@@ -93,6 +94,12 @@ export function benchNumbers(
       seed: recipe.goodness.seed,
     }),
     mixedBins: mixedBins(levelled, table, row),
+    bleach: bleachCheck(
+      states[0].dwells,
+      states[0].fits,
+      sampleFromDwells(dwells, 0, edgeShare(threshold, levelled, 0)),
+      recipe.fit.confidence,
+    ),
     states,
   }
   return { ...numbers, flags: flagsOf(numbers, recordSeconds, levelled.binSeconds) }

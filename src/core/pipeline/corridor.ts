@@ -8,8 +8,7 @@ import {
   type PreparedTrace,
   type RecordInHand,
 } from './prepare-trace.ts'
-import { groupIndex, studyThresholds } from './study-thresholds.ts'
-import { thresholdByRule } from '../states/threshold-rules.ts'
+import { groupIndex, ruledThreshold, studyThresholds } from './study-thresholds.ts'
 
 /**
  * One record on its way through the rooms. Each stage is kept until a choice it depends on changes:
@@ -52,7 +51,13 @@ export function corridorOf(inHand: RecordInHand): Corridor {
       return {
         ...product,
         group: groupIndex(product.table, recipe.dwells.gate),
-        byRule: thresholdByRule(recipe.threshold, here.levelled, this.traceProduct(recipe).histogram),
+        byRule: ruledThreshold(
+          recipe,
+          here.levelled,
+          this.traceProduct(recipe).histogram,
+          product.table,
+          product,
+        ),
       }
     },
   }

@@ -1,6 +1,7 @@
 import type { Baseline } from '../baseline/baseline.ts'
 import type { Estimate } from '../fits/fit.ts'
 import type { StateFits } from './analysis-products.ts'
+import type { BleachCheck } from './bleach-check.ts'
 import type { LawComparison } from './law-comparisons.ts'
 import type { MixedBins } from './mixed-bins.ts'
 import type { ScanRow } from './scan-state.ts'
@@ -39,6 +40,7 @@ export interface BenchNumbers {
   >
   readonly onFraction: Estimate
   readonly mixedBins: MixedBins
+  readonly bleach: BleachCheck | null
   /** [off, on] */
   readonly states: readonly [StateNumbers, StateNumbers]
   readonly flags: readonly Flag[]

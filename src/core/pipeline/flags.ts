@@ -1,5 +1,4 @@
-import { lawNamed } from '../laws/all-laws.ts'
-import type { BenchNumbers, Flag, StateNumbers } from './emitter-numbers.ts'
+import type { BenchNumbers, Flag } from './emitter-numbers.ts'
 
 type Numbers = Omit<BenchNumbers, 'flags'>
 
@@ -15,6 +14,10 @@ export function flagsOf(numbers: Numbers, recordSeconds: number, binSeconds: num
 }
 
 const STATE_NAMES = ['off', 'on'] as const
+
+/** A dark end shorter than this share of the record is nothing special. */
+const LONG_END = 0.1
+const BLEACHED = 0.01
 
 function share(value: number): string {
   return `${(100 * value).toFixed(value < 0.1 ? 1 : 0)} %`
@@ -70,29 +73,30 @@ function dwellFlags(numbers: Numbers, recordSeconds: number): Flag[] {
       })
     }
   }
-  const bleach = bleachChance(numbers.states[0])
-  if (bleach !== null && bleach.chance < 0.01) {
-    flags.push({
-      key: 'likely-bleached',
-      sentence:
-        `The record ends with ${bleach.lastSeconds.toFixed(1)} s dark (${share(bleach.lastSeconds / recordSeconds)} of it); ` +
-        `the fitted off-times give a dwell as long with p = ${bleach.chance.toPrecision(1)}. ` +
-        'Exclude the end of the record, or state the on fraction both ways.',
-    })
+  const { bleach } = numbers
+  if (bleach !== null && bleach.lastSeconds > LONG_END * recordSeconds) {
+    const end = `The record ends with ${bleach.lastSeconds.toPrecision(3)} s dark (${share(bleach.lastSeconds / recordSeconds)} of it)`
+    const chances = `p = ${bleach.chance.toPrecision(1)} under the law shown, ${bleach.chanceScaleFree.toPrecision(1)} under a plain power law`
+    const worst = Math.max(bleach.chance, bleach.chanceScaleFree)
+    const best = Math.min(bleach.chance, bleach.chanceScaleFree)
+    flags.push(
+      worst < BLEACHED
+        ? {
+            key: 'likely-bleached',
+            sentence: `${end}, longer than the off-times before it allow (${chances}). Exclude the end of the record, or state the on fraction both ways.`,
+          }
+        : best < BLEACHED
+          ? {
+              key: 'perhaps-bleached',
+              sentence: `${end}; whether the off-times before it allow that depends on their law (${chances}). State the on fraction with and without it.`,
+            }
+          : {
+              key: 'dark-end-unproven',
+              sentence: `${end}; the off-times before it allow that (${chances}), so bleaching is not proven. State the on fraction with and without it.`,
+            },
+    )
   }
   return flags
-}
-
-/**
- * Chance that the longest of n off dwells of the fitted law is at least as long as the last dark dwell:
- * 1 - [1 - S(t)]^n. Null when the record does not end dark or no law was fitted.
- */
-export function bleachChance(off: StateNumbers): { chance: number; lastSeconds: number } | null {
-  const fit = off.fits.fits[off.fits.shown]
-  const last = off.dwells.lastSeconds
-  if (last === null || fit === undefined || last <= fit.shortestSeconds) return null
-  const survival = Math.exp(lawNamed(fit.law).at(fit.coordinates, fit.shortestSeconds).logSurvival(last))
-  return { chance: -Math.expm1(fit.complete * Math.log1p(-survival)), lastSeconds: last }
 }
 
 function cutoffFlags(numbers: Numbers): Flag[] {

@@ -1,8 +1,10 @@
+import { halfThreshold } from '../states/half-threshold.ts'
 import type { Recipe } from '../recipe/recipe.ts'
 import { buildThresholdTable, thresholdRange } from '../states/build-threshold-table.ts'
-import { countHistogram } from '../states/count-histogram.ts'
+import { type CountHistogram, countHistogram } from '../states/count-histogram.ts'
+import type { LevelledTrace } from '../states/levels.ts'
 import { stateErrors } from '../states/state-errors.ts'
-import { thresholdByRule } from '../states/threshold-rules.ts'
+import { type RuledThreshold, thresholdByRule } from '../states/threshold-rules.ts'
 import type { TableGroup, ThresholdTable } from '../states/threshold-table.ts'
 import type { ThresholdProduct } from './analysis-products.ts'
 import { baselinePerBin, type PreparedTrace } from './prepare-trace.ts'
@@ -41,6 +43,20 @@ export function studyThresholds(prepared: PreparedTrace, recipe: Recipe): Thresh
     falseOffPerBin: errors.falseOffPerBin,
     artefactCutoffOnSeconds: errors.artefactCutoffOnSeconds,
     artefactCutoffOffSeconds: errors.artefactCutoffOffSeconds,
-    byRule: thresholdByRule(recipe.threshold, levelled, countHistogram(levelled)),
+    byRule: ruledThreshold(recipe, levelled, countHistogram(levelled), table, errors),
   }
+}
+
+/** The rule's threshold, given the table and its error rates. */
+export function ruledThreshold(
+  recipe: Recipe,
+  levelled: LevelledTrace,
+  histogram: CountHistogram,
+  table: ThresholdTable,
+  errors: Pick<ThresholdProduct, 'falseOnPerBin' | 'falseOffPerBin'>,
+): RuledThreshold {
+  const { firstThreshold, step, usableBins } = table
+  const { falseOnPerBin, falseOffPerBin } = errors
+  const half = halfThreshold({ firstThreshold, step, falseOnPerBin, falseOffPerBin }, levelled, usableBins)
+  return thresholdByRule(recipe.threshold, levelled, histogram, half)
 }

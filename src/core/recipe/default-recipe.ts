@@ -4,8 +4,8 @@ import type { Recipe } from './recipe.ts'
 export const DEFAULT_RECIPE: Recipe = {
   version: 1,
   bin: { seconds: 0.01 },
-  baseline: { method: 'automatic', stiffnessSeconds: 4.65, excludedSeconds: [] },
-  threshold: { rule: 'crossing', sigmas: 4, handCounts: null },
+  baseline: { method: 'automatic', stiffnessSeconds: 20, excludedSeconds: [] },
+  threshold: { rule: 'half', sigmas: 4, handCounts: null },
   dwells: { gate: 'all' },
   fit: {
     laws: [

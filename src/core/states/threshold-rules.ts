@@ -73,11 +73,14 @@ const counted = (counts: number): string => `${Number(counts.toPrecision(4))}`
  * Threshold by the recipe's rule. When the rule cannot be applied (levels not found, no threshold set by hand,
  * a single value), the next one that can is used, and the message says so: crossing, least-variance, one above
  * the lowest.
+ *
+ * @param half result of `halfThreshold`; NaN where shot noise forbids the middle
  */
 export function thresholdByRule(
   choices: Recipe['threshold'],
   { offCounts, onCounts }: Pick<LevelledTrace, 'offCounts' | 'onCounts'>,
   histogram: CountHistogram,
+  half = Number.NaN,
 ): RuledThreshold {
   const apart = offCounts >= 0 && onCounts > offCounts && Number.isFinite(onCounts)
   const levels = `off ${counted(offCounts)}, on ${counted(onCounts)} counts per bin`
@@ -87,6 +90,14 @@ export function thresholdByRule(
       counts: choices.handCounts === null ? Number.NaN : Math.ceil(choices.handCounts),
       why: 'Set by hand.',
       missing: 'No threshold was set by hand.',
+    },
+    {
+      rule: 'half',
+      counts: half,
+      why: `Nearest to half way between the levels (${levels}) where shot noise is expected to miscall fewer than 0.05 bins of the record; there durations are rounded without bias.`,
+      missing: apart
+        ? 'Shot noise would miscall bins at any threshold near half way.'
+        : 'Two separate levels were not found.',
     },
     {
       rule: 'sigma',
