@@ -24,7 +24,7 @@ export const hostileText = fc.oneof(
 )
 
 const hex = fc.string({
-  unit: fc.constantFrom(...'0123456789abcdef'),
+  unit: fc.constantFrom(...'0123456789abcdef'.split('')),
   minLength: 64,
   maxLength: 64,
 })

@@ -54,7 +54,7 @@ describe.each([
     const corridor = corridorOf(inHand)
     const recipes = CHOICES.map(([, difference]) => recipeWith(difference))
     // There and back between every two neighbours, each stage asked in another order.
-    const walk = [...recipes, DEFAULT_RECIPE, ...[...recipes].reverse(), recipes[0], recipes[3], recipes[0]]
+    const walk = [...recipes, DEFAULT_RECIPE, ...recipes.toReversed(), recipes[0], recipes[3], recipes[0]]
     const fresh = new Map(
       [...recipes, DEFAULT_RECIPE].map((recipe) => [recipe, productsOf(inHand, recipe)] as const),
     )

@@ -36,13 +36,24 @@ describe('flags', () => {
       { ...fieldModel(300), ...twoLevelModel({ durationSeconds: 300, offCps: 300, onCps: 1000, off, on }) },
     ],
     ['few dwells', 'few-on-dwells', fieldModel(8)],
-    ['an end in the dark', 'likely-bleached', { ...fieldModel(300), bleachSeconds: 150 }],
+    // Exponential off-times forbid such an end, a power law fitted to them does not.
+    ['an end in the dark', 'perhaps-bleached', { ...fieldModel(300), bleachSeconds: 150 }],
   ])('tell of %s', (_, key, model) => {
     const { flags } = numbersOf(model)
     const flag = flags.find((one) => one.key === key)
     expect(flag, flags.map((one) => one.key).join(' ')).toBeDefined()
     // What was seen, with a number.
     expect(flag?.sentence).toMatch(/\d/)
+  })
+
+  it('tell how sure a dark end is, and nothing of a short one', () => {
+    const ends = (lastSeconds: number, chance: number, chanceScaleFree: number): string[] =>
+      flagsOf({ ...good, bleach: { lastSeconds, chance, chanceScaleFree } }, 300, 0.01).map(({ key }) => key)
+    expect(ends(100, 1e-9, 1e-4)).toEqual(['likely-bleached'])
+    expect(ends(100, 1e-9, 0.3)).toEqual(['perhaps-bleached'])
+    expect(ends(100, 0.3, 1e-9)).toEqual(['perhaps-bleached'])
+    expect(ends(100, 0.2, 0.3)).toEqual(['dark-end-unproven'])
+    expect(ends(3, 1e-9, 1e-9)).toEqual([])
   })
 
   it('tell of bins between the levels when the excess is large and sure', () => {

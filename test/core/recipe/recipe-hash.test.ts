@@ -11,7 +11,7 @@ function reversedKeys(value: unknown): unknown {
   if (value === null || typeof value !== 'object') return value
   return Object.fromEntries(
     Object.entries(value)
-      .reverse()
+      .toReversed()
       .map(([key, one]) => [key, reversedKeys(one)]),
   )
 }

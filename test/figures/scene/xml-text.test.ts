@@ -21,7 +21,7 @@ describe('escapeXml', () => {
       fc.property(hostileText, (text) => {
         const escaped = escapeXml(text)
         expect(escaped).not.toMatch(/[<>"']|&(?!(amp|lt|gt|quot|#39);)/)
-        expect([...escaped].every((one) => isXmlCharacter(one.codePointAt(0) ?? 0))).toBe(true)
+        expect(Array.from(escaped).every((one) => isXmlCharacter(one.codePointAt(0) ?? 0))).toBe(true)
       }),
       { seed: 101, numRuns: 1000 },
     )
@@ -30,7 +30,9 @@ describe('escapeXml', () => {
   it('is undone for every text of XML characters, entities in it too', () => {
     fc.assert(
       fc.property(hostileText, (text) => {
-        const legal = [...text].filter((one) => isXmlCharacter(one.codePointAt(0) ?? 0)).join('')
+        const legal = Array.from(text)
+          .filter((one) => isXmlCharacter(one.codePointAt(0) ?? 0))
+          .join('')
         expect(unescapeXml(escapeXml(legal))).toBe(legal)
       }),
       { seed: 102, numRuns: 1000 },

@@ -26,7 +26,7 @@ export function fakeLocks(): FakeLocks {
         }
       }
       return {
-        request: request as LockManager['request'],
+        request,
         close() {
           for (const [name, by] of held) if (by === owner) held.delete(name)
         },

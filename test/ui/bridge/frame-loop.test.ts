@@ -1,14 +1,14 @@
 import { describe, expect, it } from 'vitest'
 import { type FrameLoop, frameLoop } from '../../../src/ui/bridge/frame-loop.ts'
 
-function screen(): { loop: FrameLoop; painted: string[]; scheduled: () => number; frame(): void } {
+function screen(): { loop: FrameLoop; painted: string[]; scheduled: () => number; frame: () => void } {
   const callbacks: (() => void)[] = []
   const loop = frameLoop((callback) => callbacks.push(callback))
   return {
     loop,
     painted: [],
     scheduled: () => callbacks.length,
-    frame() {
+    frame: () => {
       for (const callback of callbacks.splice(0)) callback()
     },
   }

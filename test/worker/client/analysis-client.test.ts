@@ -223,9 +223,9 @@ describe('analysisClient.run', () => {
     const client = analysisClient({
       spawn: () =>
         fakeWorker({
-          async openFile(_job, _file, _name, _answer, onProgress) {
-            for (const fraction of [0.25, 0.5, 1]) await onProgress(fraction)
-            return { ok: false, sentence: 'no such file' }
+          openFile(_job, _file, _name, _answer, onProgress) {
+            for (const fraction of [0.25, 0.5, 1]) onProgress(fraction)
+            return Promise.resolve({ ok: false, sentence: 'no such file' })
           },
         }),
       poolSize: 0,
@@ -251,6 +251,7 @@ describe('analysisClient.run', () => {
       ),
     )
     expect(outcome).toEqual({ ok: false, sentence: 'no such file' })
+    await until(() => heard.length === 3)
     expect(heard).toEqual([0.25, 0.5, 1])
     client.close()
   })
