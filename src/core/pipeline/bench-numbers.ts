@@ -21,16 +21,19 @@ import type { BenchNumbers, StateNumbers } from './emitter-numbers.ts'
 /** Longer than this many record lengths, an artefact cutoff has no meaning for the record. */
 const MEANINGLESS_RECORDS = 1e6
 
-/** The dwells of a prepared trace at one threshold, pieces cut at gate edges if the recipe asks for one class. */
+/**
+ * The dwells of a prepared trace at the tabled threshold nearest to the one wanted, as in `benchNumbers`; pieces cut at
+ * gate edges if the recipe asks for one class.
+ */
 export function dwellsAt(
   prepared: PreparedTrace,
   product: ThresholdProduct,
   recipe: Recipe,
-  threshold: number,
+  wanted: number,
 ): DwellTable {
-  const row = rowOf(product.table, threshold)
+  const row = rowOf(product.table, wanted)
   return dwellTableOf(
-    statesAt(prepared.levelled, threshold),
+    statesAt(prepared.levelled, thresholdOf(product.table, row)),
     prepared.levelled,
     prepared.gateCodes,
     recipe.dwells.gate,
