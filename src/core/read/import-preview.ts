@@ -6,6 +6,7 @@ import { readNpyValues } from './npy-values.ts'
 import { npzMembers } from './npz-members.ts'
 import { ReadFailure, type ReadProblem } from './read-problem.ts'
 import { type TextShape, textShape } from './text-shape.ts'
+import { utf8Text } from './utf8-text.ts'
 import { isZip } from './zip-directory.ts'
 
 /** A question the file does not answer; the answer goes into the field of the same name. */
@@ -56,22 +57,10 @@ export function questionsOf(answer: ImportAnswer): ImportQuestion[] {
 export async function firstText(source: ByteSource): Promise<string> {
   const bytes = await source.read(0, Math.min(source.size, PREVIEW_BYTES))
   const from = bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0
-  const text = decodeUtf8(bytes.subarray(from))
+  const text = utf8Text(bytes.subarray(from))
   if (bytes.length === source.size) return text
   const cut = Math.max(text.lastIndexOf('\n'), text.lastIndexOf('\r'))
   return cut > 0 ? text.slice(0, cut) : text
-}
-
-/** UTF-8, or Latin-1 where it is not valid. Core has no TextDecoder. */
-function decodeUtf8(bytes: Uint8Array): string {
-  const latin = asciiText(bytes, 0, bytes.length)
-  try {
-    return decodeURIComponent(
-      latin.replace(/[%\u0080-\u00ff]/g, (c) => `%${c.charCodeAt(0).toString(16).padStart(2, '0')}`),
-    )
-  } catch {
-    return latin
-  }
 }
 
 /** Looks at the beginning of a file and proposes how to read it. Never throws on data: see `problem`. */
@@ -185,20 +174,30 @@ async function previewNpy(source: ByteSource): Promise<Preview> {
 }
 
 async function previewNpz(source: ByteSource): Promise<Preview> {
-  const members = await npzMembers(source)
+  const { members, problems } = await npzMembers(source)
+  if (members.length === 0 && problems.length > 0) throw new ReadFailure(problems[0])
   if (members.length === 0)
     return refused(
       source,
       'the archive holds no NumPy arrays. A session file is opened by dropping it, not as data.',
     )
   const [first] = members
-  return previewOfArray(
+  const preview = previewOfArray(
     source,
     first.header,
     { kind: 'npz', member: first.name },
     false,
     members.map(({ name }) => name),
   )
+  return problems.length === 0
+    ? preview
+    : {
+        ...preview,
+        understood: [
+          ...preview.understood,
+          `${problems.length} of ${members.length + problems.length} arrays cannot be read; the first: ${problems[0].sentence}`,
+        ],
+      }
 }
 
 async function startsRising(source: ByteSource, header: NpyHeader): Promise<boolean> {

@@ -82,7 +82,7 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
     failAtByte(
       source.name,
       headerStart,
-      `the shape (${shapeText.slice(0, 40)}) is not a list of whole numbers. The file is damaged; copy it again or save it anew.`,
+      `the shape ${quoted(`(${shapeText})`)} is not a list of whole numbers. The file is damaged; copy it again or save it anew.`,
     )
   const shape = parts.map(Number)
   if (shape.length === 0 || shape.length > 2)

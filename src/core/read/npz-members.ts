@@ -2,7 +2,7 @@ import { Inflate } from 'fflate'
 import { type ByteSource, bytesSource } from './byte-source.ts'
 import { crc32 } from './crc32.ts'
 import { type NpyHeader, isNpy, readNpyHeader } from './npy-header.ts'
-import { failWhole, quoted } from './read-problem.ts'
+import { failWhole, quoted, ReadFailure, type ReadProblem } from './read-problem.ts'
 import type { RowHooks } from './text-rows.ts'
 import { type ZipEntry, zipDataStart, zipDirectory } from './zip-directory.ts'
 
@@ -19,15 +19,26 @@ export interface NpzMember {
   readonly header: NpyHeader
 }
 
+export interface NpzContents {
+  readonly members: readonly NpzMember[]
+  /** Why members with a NumPy header cannot be read, e.g. single numbers and texts beside the data. */
+  readonly problems: readonly ReadProblem[]
+}
+
 /** The NumPy arrays of an archive with their headers; members of other kinds are passed over. */
-export async function npzMembers(source: ByteSource): Promise<NpzMember[]> {
+export async function npzMembers(source: ByteSource): Promise<NpzContents> {
   const members: NpzMember[] = []
+  const problems: ReadProblem[] = []
   for (const entry of await zipDirectory(source)) {
-    const head = await headOf(source, entry)
-    if (!isNpy(head)) continue
-    members.push({ name: entry.name, header: await memberHeader(source, entry, head) })
+    try {
+      const head = await headOf(source, entry)
+      if (isNpy(head)) members.push({ name: entry.name, header: await memberHeader(source, entry, head) })
+    } catch (error) {
+      if (!(error instanceof ReadFailure)) throw error
+      problems.push(error.problem)
+    }
   }
-  return members
+  return { members, problems }
 }
 
 /**

@@ -17,16 +17,21 @@ export class ReadFailure extends Error {
   }
 }
 
+/** Names of files and archive members may hold control characters; a sentence does not. */
+function fail(sentence: string, file: string, line: number | null, byte: number | null): never {
+  throw new ReadFailure({ sentence: sentence.replace(/\p{Cc}/gu, '·'), file, line, byte })
+}
+
 export function failAtLine(file: string, line: number, what: string): never {
-  throw new ReadFailure({ sentence: `“${file}”, line ${line}: ${what}`, file, line, byte: null })
+  fail(`“${file}”, line ${line}: ${what}`, file, line, null)
 }
 
 export function failAtByte(file: string, byte: number, what: string): never {
-  throw new ReadFailure({ sentence: `“${file}”, byte ${byte}: ${what}`, file, line: null, byte })
+  fail(`“${file}”, byte ${byte}: ${what}`, file, null, byte)
 }
 
 export function failWhole(file: string, what: string): never {
-  throw new ReadFailure({ sentence: `“${file}”: ${what}`, file, line: null, byte: null })
+  fail(`“${file}”: ${what}`, file, null, null)
 }
 
 /** Text of a value from a file, short enough for a sentence. */

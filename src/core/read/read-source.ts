@@ -63,7 +63,7 @@ async function readByKind(source: ByteSource, answer: ImportAnswer, hooks: RowHo
   return member === null ? null : readArray(member, answer, half(0.5))
 }
 
-/** Median step and decimals of the time column as the answer reads it, from the first rows. */
+/** Median step (the lower one of two: gaps make steps longer) and decimals of the time column as the answer reads it, from the first rows. */
 async function firstNumbers(source: ByteSource, answer: Extract<ImportAnswer, { kind: 'text' }>) {
   const column = answer.columns.findIndex((role) => role === 'time' || role === 'arrival')
   const text = await firstText(source)
@@ -88,6 +88,6 @@ async function firstNumbers(source: ByteSource, answer: Extract<ImportAnswer, { 
     .slice(1)
     .map((time, i) => time - times[i])
     .sort((a, b) => a - b)
-  const step = steps.length === 0 ? null : steps[Math.floor(steps.length / 2)]
+  const step = steps.length === 0 ? null : steps[Math.floor((steps.length - 1) / 2)]
   return { step: step !== null && step > 0 ? step : null, decimals: Math.min(decimals, 12) }
 }

@@ -18,7 +18,11 @@ const STEP_TOLERANCE = 0.3
 /** Missing bins, over all columns, that any file may have, and more for each of its bytes: a broken time axis must not cost memory. */
 const FREE_MISSING = 1_000_000
 const MISSING_PER_BYTE = 4
+/** The mean step of the file may differ from that of its first rows by this share. */
+const STEP_DRIFT = 0.01
 const BUFFER = 1 << 16
+/** Relative error of a decimal number times a power of ten in double arithmetic, with room. */
+const ROUNDING = 2 ** -51
 
 export interface TextRead {
   readonly records: ReadRecord[]
@@ -34,7 +38,7 @@ export async function readText(
 ): Promise<TextRead | null> {
   return answer.columns.includes('arrival')
     ? readArrivals(source, answer, hooks, first.decimals)
-    : readCounts(source, answer, hooks, first.step)
+    : readCounts(source, answer, hooks, first)
 }
 
 async function readArrivals(
@@ -89,7 +93,7 @@ async function readArrivals(
         line,
         `the arrival time ${time} is too large for a resolution of ${unit / scale} s. Correct the line or choose a coarser unit.`,
       )
-    if (Math.abs(ticks - tick) > 1e-6 * Math.max(1, ticks * 1e-9)) {
+    if (Math.abs(ticks - tick) > 1e-6 + ROUNDING * ticks) {
       if (answer.timeUnit === 'ticks')
         failAtLine(
           source.name,
@@ -143,7 +147,7 @@ async function readCounts(
   source: ByteSource,
   answer: TextAnswer,
   hooks: RowHooks,
-  firstStep: number | null,
+  { step: firstStep, decimals }: { readonly step: number | null; readonly decimals: number },
 ): Promise<TextRead | null> {
   const timeColumn = answer.columns.indexOf('time')
   const gateColumn = answer.columns.indexOf('gate')
@@ -167,7 +171,7 @@ async function readCounts(
   if (columns.length === 0) failWhole(source.name, 'no column holds counts or rates. Mark at least one.')
   const step = firstStep ?? 1
   const gaps: { at: number; bins: number }[] = []
-  const windows: GateWindow[] = []
+  const gated: { from: number; to: number }[] = []
   let index = -1
   let start = 0
   let before = Number.NaN
@@ -225,23 +229,32 @@ async function readCounts(
         )
       if (gate === 1 && gateSince < 0) gateSince = index
       if (gate === 0 && gateSince >= 0) {
-        windows.push(windowOf(gateSince, index, start * unit, binSeconds))
+        gated.push({ from: gateSince, to: index })
         gateSince = -1
       }
     }
   })
   if (!whole) return null
   if (index < 0) failWhole(source.name, 'the file holds no rows of numbers. Choose a file with data.')
-  if (gateSince >= 0) windows.push(windowOf(gateSince, index + 1, start * unit, binSeconds))
+  if (gateSince >= 0) gated.push({ from: gateSince, to: index + 1 })
   // The mean step over the whole file is finer than that of two rounded times.
   const exactBin = timeColumn >= 0 && index > 0 ? ((before - start) * unit) / index : binSeconds
+  // Each step may be a little off, all of them together only by the rounding of the printed times.
+  const driftAllowed = Math.max(STEP_DRIFT, Math.min(STEP_TOLERANCE, 10 ** -decimals / step))
+  if (Math.abs(exactBin - binSeconds) > driftAllowed * binSeconds)
+    failWhole(
+      source.name,
+      `the time advances by ${(exactBin / unit).toPrecision(4)} per row on average, by ${(binSeconds / unit).toPrecision(4)} in the first rows; bins must be even. Split the file where the step changes.`,
+    )
   const coverage = gaps.length === 0 ? null : new Uint8Array(index + 1).fill(255)
   let missing = 0
   for (const { at, bins } of gaps) {
     coverage?.fill(0, at, at + bins)
     missing += bins
   }
-  const gate: Gate | null = gateColumn < 0 ? null : { windows }
+  const gateStart = timeColumn < 0 ? 0 : start * unit
+  const gate: Gate | null =
+    gateColumn < 0 ? null : { windows: gated.map(({ from, to }) => windowOf(from, to, gateStart, exactBin)) }
   const records = columns.map(({ column, counts }): ReadRecord => {
     const trace: Trace = {
       kind: 'trace',

@@ -139,7 +139,8 @@ function describe(
   const rising = first.length > 1 && first.every((value, i) => i === 0 || value > first[i - 1])
   const notFalling = first.every((value, i) => i === 0 || value >= first[i - 1])
   const steps = first.slice(1).map((value, i) => value - first[i])
-  const step = steps.length === 0 ? null : [...steps].sort((a, b) => a - b)[Math.floor(steps.length / 2)]
+  const step =
+    steps.length === 0 ? null : [...steps].sort((a, b) => a - b)[Math.floor((steps.length - 1) / 2)]
   const even =
     rising &&
     step !== null &&

@@ -1,6 +1,6 @@
 import type { ByteSource } from './byte-source.ts'
-import { asciiText } from './decimal.ts'
 import { failAtByte, failWhole, quoted } from './read-problem.ts'
+import { utf8Text } from './utf8-text.ts'
 
 /** A file inside an archive, as the archive's directory describes it. */
 export interface ZipEntry {
@@ -54,6 +54,12 @@ export async function zipDirectory(source: ByteSource): Promise<ZipEntry[]> {
   const start = view.getUint32(end + 16, true)
   if (count === 0xffff || size === 0xffffffff || start === 0xffffffff)
     failAtByte(source.name, tailStart + end, `the archive is too large. ${BIG}`)
+  if (view.getUint32(end + 4, true) !== 0 || view.getUint16(end + 8, true) !== count)
+    failAtByte(
+      source.name,
+      tailStart + end,
+      `the archive is a part of several or contradicts itself. ${DAMAGED}`,
+    )
   if (start + size > tailStart + end || size > LARGEST_DIRECTORY || count > MOST_ENTRIES)
     failAtByte(
       source.name,
@@ -79,7 +85,7 @@ function entriesIn(source: ByteSource, bytes: Uint8Array, start: number, count: 
     const next = at + ENTRY_BYTES + nameBytes + view.getUint16(at + 30, true) + view.getUint16(at + 32, true)
     if (next > bytes.length)
       failAtByte(source.name, start + at, `the name of member ${i + 1} is cut off. ${DAMAGED}`)
-    const name = asciiText(bytes, at + ENTRY_BYTES, at + ENTRY_BYTES + nameBytes)
+    const name = utf8Text(bytes.subarray(at + ENTRY_BYTES, at + ENTRY_BYTES + nameBytes))
     const entry: ZipEntry = {
       name,
       method: view.getUint16(at + 10, true),
@@ -101,6 +107,8 @@ function entriesIn(source: ByteSource, bytes: Uint8Array, start: number, count: 
     entries.push(entry)
     at = next
   }
+  if (at !== bytes.length)
+    failAtByte(source.name, start + at, `the directory goes on after its ${count} members. ${DAMAGED}`)
   return entries
 }
 

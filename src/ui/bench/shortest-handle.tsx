@@ -1,6 +1,6 @@
 import type { Frame } from '../../figures/scene/scene.ts'
 import { rowOf } from '../../core/pipeline/study-thresholds.ts'
-import { withDifference } from '../../state/choices/session-changes.ts'
+import { recipeOf, withDifference } from '../../state/choices/session-changes.ts'
 import { useApp, useChoices, useResults, useView } from '../bridge/app-context.tsx'
 import { useDrag } from '../bridge/use-drag.ts'
 import { siDuration } from '../../core/numeric/units.ts'
@@ -17,13 +17,18 @@ export function ShortestHandle({ state, frame }: { state: 0 | 1; frame: Frame })
   useResults((results) => results.settled)
   const live = useView((view) => view.liveShortest)
   useView((view) => view.liveThreshold)
+  useChoices((state_) => state_.session)
   const now = benchNow(app)
   const domains = domainsOf(app, plot)
   const row = now?.product == null || now.threshold === null ? -1 : rowOf(now.product.table, now.threshold)
   const fits =
     (now?.settled?.threshold === now?.threshold ? now?.settled?.states[state].fits : undefined) ??
     app.results.getState().rows.get(row)?.states[state]
-  const bins = live?.state === state ? live.bins : fits?.shortest.bins
+  // A number just set by hand is known before its fits are back.
+  const choices =
+    now === null ? null : recipeOf(app.choices.store.getState().session, now.emitter).fit.shortest
+  const byHand = choices?.rule === 'hand' ? choices.handBins[state === 1 ? 'on' : 'off'] : null
+  const bins = live?.state === state ? live.bins : (byHand ?? fits?.shortest.bins)
   const decade = domains === null ? 1 : Math.log(domains.x[1] / domains.x[0]) / frame.width
 
   const show = (value: number | null): void => {
