@@ -135,16 +135,16 @@ async function unpack(
     const block = await source.read(start + at, start + to)
     if (block.length < to - at) damaged(source, entry, 'is cut short')
     if (method === 0) more = onChunk(block)
-    else inflateBlock(inflate, block, () => damaged(source, entry, 'does not unpack'))
+    else inflateBlock(inflate, block, to === packedBytes, () => damaged(source, entry, 'does not unpack'))
     hooks.onProgress(to / packedBytes)
   }
   return true
 }
 
 /** fflate throws on bytes that are not DEFLATE, with a plain Error that carries a numeric code; our own failures pass. */
-function inflateBlock(inflate: Inflate, block: Uint8Array, onDamage: () => never): void {
+function inflateBlock(inflate: Inflate, block: Uint8Array, last: boolean, onDamage: () => never): void {
   try {
-    inflate.push(block)
+    inflate.push(block, last)
   } catch (error) {
     if (error instanceof Error && 'code' in error) onDamage()
     throw error

@@ -53,11 +53,27 @@ describe('archives written by NumPy', () => {
 
 describe('archives of others', () => {
   it('passes over what is not an array', async () => {
-    expect((await npzMembers(bytesSource(zipped, 'a.npz'))).map(({ name }) => name)).toEqual(['dots.npy'])
+    expect((await npzMembers(bytesSource(zipped, 'a.npz'))).members.map(({ name }) => name)).toEqual([
+      'dots.npy',
+    ])
     expect(countsIn(await readGiven(bytesSource(zipped, 'a.npz'), COUNTS))).toEqual([
       [1, 2, 3],
       [4, 5, 6],
     ])
+  })
+  it('reads the arrays beside single numbers, and says what it cannot read', async () => {
+    const scalar = npyFile('<f8', '', itemBytes('<f8', [0.01]))
+    const source = bytesSource(zipSync({ 'bin.npy': scalar, 'dots.npy': dots }), 'a.npz')
+    const preview = await previewSource(source)
+    expect(preview.members).toEqual(['dots.npy'])
+    expect(preview.understood.at(-1)).toBe(
+      '1 of 2 arrays cannot be read; the first: “a.npz: bin.npy”: the array has 0 dimensions; one or two are read. Reshape it before saving.',
+    )
+    expect(countsIn(await readGiven(source, COUNTS)).length).toBe(2)
+  })
+  it('control characters in names do not reach the sentences', async () => {
+    const bad = zipSync({ 'a\u0007.npy': npyFile('<i4', '9,', new Uint8Array(4)) })
+    expect(await refusal(bad)).toContain('“a.npz: a·.npy”, byte 128: the header promises')
   })
   it('without arrays', async () => {
     expect(await refusal(zipSync({ 'a.txt': strToU8('hello') }))).toContain(
@@ -109,6 +125,13 @@ describe('damage', () => {
     const big = changed(zipped, (view) => view.setUint32(at + 24, 0xffffffff, true))
     expect(await refusal(big)).toContain('(zip64), which is not read. Save its arrays one by one.')
     const end = changed(zipped, (view) => view.setUint16(zipped.length - 12, 0xffff, true))
+    const fewer = changed(zipped, (view) => {
+      view.setUint16(zipped.length - 12, 1, true)
+      view.setUint16(zipped.length - 14, 1, true)
+    })
+    expect(await refusal(fewer)).toContain(
+      'the directory goes on after its 1 members. The archive is damaged',
+    )
     expect(await refusal(end)).toContain('(zip64), which is not read.')
   })
 })
@@ -164,5 +187,15 @@ describe('stopping', () => {
     expect(outcome).toMatchObject({ ok: false, stopped: true })
     expect(outcome).not.toHaveProperty('records')
     expect((await npzMember(source, 'n.npy', QUIET))?.size).toBe(noise.length + 128)
+  })
+})
+
+describe('names', () => {
+  it('in UTF-8 are kept', async () => {
+    const zip = zipSync({ 'Kügelchen µ.npy': dots })
+    expect((await npzMembers(bytesSource(zip, 'a.npz'))).members.map(({ name }) => name)).toEqual([
+      'Kügelchen µ.npy',
+    ])
+    expect(countsIn(await readGiven(bytesSource(zip, 'a.npz'), COUNTS)).length).toBe(2)
   })
 })

@@ -131,9 +131,9 @@ describe('refused with byte and advice', () => {
     [
       'shape of words',
       npyFile('<i4', 'three', data),
-      'the shape (three) is not a list of whole numbers. The file is damaged',
+      'the shape “(three)” is not a list of whole numbers. The file is damaged',
     ],
-    ['shape with holes', npyFile('<i4', ',,3', data), 'the shape (,,3) is not a list of whole numbers'],
+    ['shape with holes', npyFile('<i4', ',,3', data), 'the shape “(,,3)” is not a list of whole numbers'],
   ]
   for (const [word, bytes, sentence] of CASES) {
     it(word, async () => {

@@ -231,6 +231,11 @@ describe('bad input gets one sentence with the line', () => {
       'line 5: the time advances by 0.500 steps of 2; bins must be even. If these are arrival times, read the column as such.',
     ],
     [
+      'a step that changes',
+      `time_s,n\n${Array.from({ length: 60 }, (_, i) => `${(i < 40 ? i : 40 + (i - 40) * 1.25).toFixed(2)},1`).join('\n')}\n`,
+      'the time advances by 1.081 per row on average, by 1.000 in the first rows; bins must be even. Split the file where the step changes.',
+    ],
+    [
       'arrival backwards',
       'arrival (us)\n1\n3\n2\n',
       'line 4: the arrival time 2 is earlier than the one before (3). Sort the file',
