@@ -39,6 +39,7 @@ export interface Preview {
 
 const PREVIEW_BYTES = 1 << 18
 const PREVIEW_ROWS = 12
+const MOST_COLUMNS = 4096
 const FIRST_ITEMS = 4096
 
 const QUESTIONS: Readonly<Record<ImportQuestion['key'], string>> = {
@@ -124,6 +125,11 @@ async function previewText(source: ByteSource): Promise<Preview> {
       'no line of it is a row of numbers. Expected columns of numbers separated by commas, semicolons, tabs or spaces.',
     )
   const { answer } = shape
+  if (answer.columns.length > MOST_COLUMNS)
+    return refused(
+      source,
+      `it has ${answer.columns.length} columns, at most ${MOST_COLUMNS} are read. Turn the table, or save it in parts.`,
+    )
   const questions = questionsOf(answer)
   const only = answer.columns.length === 1 && !shape.rolesSaid
   return {

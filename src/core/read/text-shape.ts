@@ -24,6 +24,7 @@ const DIALECTS: readonly { delimiter: TextAnswer['delimiter']; decimalComma: boo
   { delimiter: ';', decimalComma: true },
   { delimiter: ' ', decimalComma: true },
 ]
+const LONGEST_NAME = 200
 const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$/
 const COMMA_NUMBER = /^[+-]?(?:\d+,?\d*|,\d+)(?:[eE][+-]?\d+)?$/
 
@@ -167,7 +168,10 @@ function describe(
       kind: 'text',
       ...dialect,
       columns,
-      names: Array.from({ length: width }, (_, column) => header[column] ?? `column ${column + 1}`),
+      names: Array.from(
+        { length: width },
+        (_, column) => header[column]?.slice(0, LONGEST_NAME) ?? `column ${column + 1}`,
+      ),
       timeUnit: unit,
       tickSeconds: null,
       binSeconds,
