@@ -1,3 +1,5 @@
+import { leaveMeasure } from './leave-measure.ts'
+
 /**
  * Paints a drag as soon as the pointer moves, but at most once a frame, and leaves a User Timing measure for every
  * painted step: from the pointer event to the frame that shows the repaint.
@@ -17,13 +19,7 @@ export function dragPace<T>(name: string, paint: (value: T) => void): DragPace<T
   let waiting: { value: T; at: number } | null = null
   let inFrame = false
 
-  const measure = (at: number): void => {
-    try {
-      performance.measure(name, { start: at, end: performance.now() })
-    } catch {
-      // A clock that went backwards leaves no measure.
-    }
-  }
+  const measure = (at: number): void => leaveMeasure(name, at)
   const afterFrame = (callback: () => void): void => {
     const channel = new MessageChannel()
     channel.port1.onmessage = () => {

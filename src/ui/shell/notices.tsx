@@ -9,6 +9,7 @@ export function Notices() {
   const status = useSaveStatus()
   const [hidden, setHidden] = useState(false)
   const damaged = app.opened.kind === 'damaged' && !hidden ? app.opened : null
+  const newer = damaged?.keptAs === 'session'
   const sentence = status.kind === 'read-only' || status.kind === 'failed' ? status.sentence : null
   if (sentence === null && damaged === null) return null
   return (
@@ -22,10 +23,11 @@ export function Notices() {
       {damaged === null ? null : (
         <div className="banner">
           <span>
-            The saved session could not be read and was set aside, not deleted: {damaged.sentence} A new
-            session was begun.
+            {newer
+              ? `The saved session was left as it is: ${damaged.sentence} Changes made here are not saved.`
+              : `The saved session could not be read and was set aside, not deleted: ${damaged.sentence} A new session was begun.`}
           </span>
-          <Button onClick={() => void downloadDamaged()}>Download what was set aside</Button>
+          {newer ? null : <Button onClick={() => void downloadDamaged()}>Download what was set aside</Button>}
           <Button look="quiet" onClick={() => setHidden(true)}>
             Close
           </Button>

@@ -77,8 +77,7 @@ export function TopBar({ onFiles, railOpen, onRail }: TopBarProps) {
       <TakeAway />
       <Button
         look="quiet"
-        title={`Appearance: ${theme}`}
-        aria-label={`Appearance: ${theme}. Change`}
+        title="Appearance: automatic, dark or light"
         onClick={() => app.setTheme(NEXT_THEME[theme])}
       >
         {theme === 'system' ? 'Auto' : theme === 'dark' ? 'Dark' : 'Light'}
