@@ -31,7 +31,7 @@ describe('access', () => {
       it(`has nothing serious by axe-core, ${colorScheme}, ${width} x ${height}`, async () => {
         const { page, errors } = await openApp(browser, { width, height, colorScheme })
         const serious = async (): Promise<string[]> => {
-          const result = (await page.evaluate(`(() => { ${AXE}; return axe.run(document) })()`)) as AxeResult
+          const result = await page.evaluate<AxeResult>(`(() => { ${AXE}; return axe.run(document) })()`)
           return result.violations
             .filter(({ impact }) => impact === 'serious' || impact === 'critical')
             .map(({ id, nodes }) => `${id}: ${nodes.map((node) => node.html.slice(0, 120)).join(' | ')}`)
