@@ -29,15 +29,13 @@ const CELLS_FREE = 1_100_000
 const CELLS_PER_BYTE = 8
 
 function answered(answer: ImportAnswer, random: RandomSource): ImportAnswer {
-  return {
-    ...answer,
+  const open = {
     timeUnit: answer.timeUnit ?? oneOf(random, ['s', 'ms', 'us', 'ns', 'ticks'] as const),
     tickSeconds: 1e-9,
     binSeconds: answer.binSeconds ?? 0.01,
-    ...(answer.kind === 'text'
-      ? {}
-      : { content: answer.content ?? oneOf(random, ['arrival', 'counts'] as const) }),
-  } as ImportAnswer
+  }
+  if (answer.kind === 'text') return { ...answer, ...open }
+  return { ...answer, ...open, content: answer.content ?? oneOf(random, ['arrival', 'counts'] as const) }
 }
 
 /** Another way to read the file, as a user or a remembered answer could choose. */

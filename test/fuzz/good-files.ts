@@ -36,6 +36,7 @@ function textTable(random: RandomSource): GoodFile {
   const rate = below(random, 4) === 0
   const gate = below(random, 5) === 0
   const timed = below(random, 5) > 0
+  const start = below(random, 3) * 7
   const number = (value: number | string): string => String(value).replace('.', point)
   const lines: string[] = []
   if (below(random, 3) === 0) lines.push(oneOf(random, ['# made today', '% x', '// notes', '']))
@@ -50,7 +51,7 @@ function textTable(random: RandomSource): GoodFile {
   for (let i = 0, at = 0; i < rows; i++, at += below(random, 25) === 0 ? 3 : 1) {
     const counts = Array.from({ length: width }, () => below(random, 300) * (rate ? 100 : 1))
     const row = [
-      ...(timed ? [(at * 0.01).toFixed(2)] : []),
+      ...(timed ? [(start + at * 0.01).toFixed(2)] : []),
       ...counts,
       ...(gate ? [i % 3 === 0 ? 1 : 0] : []),
     ]

@@ -1,4 +1,4 @@
-import { unzipSync } from 'fflate'
+import { crc32, inflateRawSync } from 'node:zlib'
 import type { ArrayAnswer, ImportAnswer, TextAnswer } from '../../src/core/read/import-answer.ts'
 
 /** What an obvious, slow reader finds: one list of numbers per column in use (text) or per emitter (array). */
@@ -15,8 +15,30 @@ const NUMBER = /^[+-]?(\d+\.?\d*|\.\d+)(e[+-]?\d+)?$/i
 export function slowRead(bytes: Uint8Array, answer: ImportAnswer): SlowRead | null {
   if (answer.kind === 'text') return slowText(bytes, answer)
   if (answer.kind === 'npy') return slowArray(bytes, answer)
-  const members = unzipSync(bytes, { filter: ({ name }) => name === answer.member })
-  return slowArray(members[answer.member ?? ''], answer)
+  const member = slowMember(bytes, answer.member ?? '')
+  return member === null ? null : slowArray(member, answer)
+}
+
+/** A member found by its name in the directory, unpacked by zlib, when its checksum is right. */
+function slowMember(bytes: Uint8Array, name: string): Uint8Array | null {
+  const file = Buffer.from(bytes)
+  // Names that are not valid UTF-8 are Latin-1.
+  const wanted = [Buffer.from(name), Buffer.from(name, 'latin1')]
+  for (
+    let at = file.indexOf('PK\u0001\u0002', 0, 'latin1');
+    at >= 0;
+    at = file.indexOf('PK\u0001\u0002', at + 4, 'latin1')
+  ) {
+    if (at + 46 > file.length) return null
+    const nameBytes = file.readUInt16LE(at + 28)
+    if (!wanted.some((one) => one.equals(file.subarray(at + 46, at + 46 + nameBytes)))) continue
+    const header = file.readUInt32LE(at + 42)
+    const start = header + 30 + file.readUInt16LE(header + 26) + file.readUInt16LE(header + 28)
+    const packed = file.subarray(start, start + file.readUInt32LE(at + 20))
+    const data = file.readUInt16LE(at + 10) === 8 ? inflateRawSync(packed) : packed
+    return crc32(data) === file.readUInt32LE(at + 16) ? data : null
+  }
+  return null
 }
 
 function slowText(bytes: Uint8Array, answer: TextAnswer): SlowRead | null {

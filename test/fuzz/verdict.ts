@@ -26,6 +26,10 @@ export function refusalFault(problem: ReadProblem, bytes: Uint8Array, name: stri
 export function dataFault(read: Read, bytes: Uint8Array, answer: ImportAnswer): string | null {
   const slow = slowRead(bytes, answer)
   if (slow === null) return 'read what the slow reader cannot'
+  const beside = answer.kind === 'text' && answer.columns.includes('arrival') ? answer.columns : []
+  const unused = beside.filter((role) => role !== 'arrival' && role !== 'ignore').length
+  if (unused > 0 && !read.notes.some((note) => note.includes(`${unused} column`)))
+    return 'columns left out in silence'
   if (slow.columns.length !== read.records.length)
     return `${read.records.length} records of ${slow.columns.length}`
   for (const [i, one] of read.records.entries()) {

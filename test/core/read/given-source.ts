@@ -1,5 +1,4 @@
 import { type ByteSource, bytesSource } from '../../../src/core/read/byte-source.ts'
-import type { ImportAnswer } from '../../../src/core/read/import-answer.ts'
 import { previewSource } from '../../../src/core/read/import-preview.ts'
 import type { ReadOutcome } from '../../../src/core/read/read-record.ts'
 import { readSource } from '../../../src/core/read/read-source.ts'
@@ -21,7 +20,7 @@ export async function readGiven(
     if (preview.problem === null) throw new Error('a preview without answer must have a problem')
     return { ok: false, problem: preview.problem }
   }
-  return readSource(source, { ...preview.answer, ...answers } as ImportAnswer, QUIET)
+  return readSource(source, { ...preview.answer, ...answers }, QUIET)
 }
 
 /** Counts of every record as plain lists. */

@@ -16,7 +16,8 @@ export function itemBytes(descr: string, values: readonly number[]): Uint8Array 
   const little = descr[0] !== '>'
   values.forEach((value, i) => {
     const at = i * size
-    if (descr[1] === 'f') size === 4 ? view.setFloat32(at, value, little) : view.setFloat64(at, value, little)
+    if (descr[1] === 'f' && size === 4) view.setFloat32(at, value, little)
+    else if (descr[1] === 'f') view.setFloat64(at, value, little)
     else if (size === 1) view.setUint8(at, value)
     else if (size === 2) view.setUint16(at, value, little)
     else if (size === 4) view.setUint32(at, value, little)

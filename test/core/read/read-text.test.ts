@@ -272,8 +272,7 @@ describe('bad input gets one sentence with the line', () => {
     )
   })
   it('UTF-16, with and without a byte order mark', async () => {
-    const wide = (text: string): Uint8Array =>
-      Uint8Array.from([...text].flatMap((c) => [c.charCodeAt(0) & 255, c.charCodeAt(0) >> 8]))
+    const wide = (text: string): Uint8Array => new Uint8Array(Buffer.from(text, 'utf16le'))
     expect(problemIn(await readGiven(bytesSource(wide('\uFEFF1,2\n3,4\n'), 'a.csv')))).toBe(
       '“a.csv”: the text is in UTF-16. Save it as UTF-8 or plain text.',
     )
@@ -287,6 +286,17 @@ describe('bad input gets one sentence with the line', () => {
 })
 
 describe('gates', () => {
+  it('windows keep to the bins when the first steps are rounded', async () => {
+    // Bins of 1/30 s printed to 3 decimals, from 5 s on.
+    const rows = Array.from({ length: 3000 }, (_, i) => `${(5 + i / 30).toFixed(3)},1,${i >= 2000 ? 1 : 0}`)
+    const outcome = await readGiven(textSource(`time_s,n,field\n${rows.join('\n')}\n`))
+    if (!outcome.ok) throw new Error(outcome.problem.sentence)
+    const [{ record, gate }] = outcome.records
+    expect(record.kind === 'trace' && record.binSeconds).toBeCloseTo(1 / 30, 6)
+    expect(gate?.windows.length).toBe(1)
+    expect(gate?.windows[0].startSeconds).toBeCloseTo(5 + 2000 / 30, 2)
+    expect(gate?.windows[0].endSeconds).toBeCloseTo(105, 2)
+  })
   it('a column of 0 and 1 becomes windows', async () => {
     const outcome = await readGiven(textSource('time_s,n,field\n0,1,0\n1,1,1\n2,1,1\n3,1,0\n4,2,1\n'))
     expect(outcome.ok && outcome.records[0].gate?.windows).toEqual([
