@@ -43,7 +43,8 @@ export function PlotsBar() {
       <Goodness state={0} />
       <Goodness state={1} />
       <span className="spring" />
-      <span className="aside" aria-live="off">
+      <Key />
+      <span className="aside progress-note" aria-live="off">
         {rows > 0 && done < rows
           ? `Fits for ${done} of ${rows} thresholds`
           : rows > 0
@@ -51,6 +52,28 @@ export function PlotsBar() {
             : ''}
       </span>
     </div>
+  )
+}
+
+/** What the tints mean. */
+function Key() {
+  const gated = useResults((results) =>
+    results.trace.status === 'arrived' ? results.trace.value.gate !== null : false,
+  )
+  return (
+    <span className="key">
+      {gated ? (
+        <span>
+          <i className="swatch driven" /> gate on
+        </span>
+      ) : null}
+      <span title="Dwells that shot noise alone is expected to make, from the error rates at this threshold">
+        <i className="swatch spurious" /> spurious
+      </span>
+      <span title="Pieces of true dwells that miscalled bins are expected to leave">
+        <i className="swatch split" /> split
+      </span>
+    </span>
   )
 }
 
