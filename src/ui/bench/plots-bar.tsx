@@ -44,7 +44,7 @@ export function PlotsBar() {
       <Goodness state={1} />
       <span className="spring" />
       <Key />
-      <span className="aside progress-note" aria-live="off">
+      <span className={done < rows ? 'aside progress-note' : 'visually-hidden'} aria-live="off">
         {rows > 0 && done < rows
           ? `Fits for ${done} of ${rows} thresholds`
           : rows > 0
