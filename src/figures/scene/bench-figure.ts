@@ -137,13 +137,16 @@ export function benchFigure(input: BenchFigureInput): Scene {
 function captionLines({ trace, numbers, name, confidence }: BenchFigureInput, width: number): string[] {
   const bin = siDuration(trace.levelled.binSeconds)
   const [off, on] = numbers.states
+  const gated = (trace.gate?.windows ?? []).some(({ gateClass }) => gateClass === 'driven')
+    ? 'Shaded: gate on. '
+    : ''
   const text =
     `${name}: ${siDuration(trace.durationSeconds, 4)} in bins of ${bin}; on at ${numbers.threshold} counts or more ` +
     `(${roundTo(numbers.countsAboveBaseline, null, 3)} above the ${numbers.baseline.method} baseline). ` +
     `α is the exponent of the density, P(t) ∝ t^−α; the law shown names the form of its cutoff τ. ` +
     `Lines: maximum likelihood with bin-exact probabilities, solid over the fitted range (off from ${off.fits.shortest.bins} bins, ` +
     `on from ${on.fits.shortest.bins} bins); brackets: ${Number((100 * confidence).toPrecision(3))} % profile-likelihood intervals. ` +
-    `Bars: exact Poisson. ${off.dwells.censored + on.dwells.censored} dwells cut and ${off.dwells.startUnseen + on.dwells.startUnseen} of unseen start.`
+    `Bars: exact Poisson. ${gated}Dwells cut: ${off.dwells.censored + on.dwells.censored}; of unseen start, not fitted: ${off.dwells.startUnseen + on.dwells.startUnseen}.`
   const lines: string[] = []
   let line = ''
   for (const word of text.split(' ')) {

@@ -131,7 +131,7 @@ export function dwellPanel(input: DwellPanelInput): Panel {
       const x = Math.log(seconds[i] / input.xDomain[0]) / Math.log(input.xDomain[1] / input.xDomain[0])
       marks.push({ kind: 'text', x, y: 0.965, text: String(numbers[i]), anchor: 'middle', role: 'soft' })
     }
-    marks.push({ kind: 'text', x: 0.985, y: 0.9, text: 'numbers at risk', anchor: 'end', role: 'soft' })
+    marks.push({ kind: 'text', x: 0.01, y: 0.9, text: 'numbers at risk', anchor: 'start', role: 'soft' })
   }
   for (const [index, text] of input.legend.entries()) {
     marks.push({
