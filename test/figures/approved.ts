@@ -2,9 +2,11 @@ import { existsSync, readFileSync, writeFileSync } from 'node:fs'
 import { resolve } from 'node:path'
 import { expect } from 'vitest'
 
-/** Numbers rounded to one decimal: a tenth of a point is not seen, and machines differ in the last digits. */
+/** Numbers of attributes rounded to three decimals, as the painter writes them; texts are compared as they are. */
 function rounded(svg: string): string {
-  return svg.replace(/-?\d+\.\d+/g, (number) => String(Number(Number(number).toFixed(1)) + 0))
+  return svg.replace(/="[^"]*"/g, (attribute) =>
+    attribute.replace(/-?\d+\.\d{4,}/g, (number) => String(Number(Number(number).toFixed(3)))),
+  )
 }
 
 /**

@@ -6,9 +6,10 @@ import { extractMetadata, type FigureMetadata } from '../../src/figures/scene/fi
 import { LIGHT } from '../../src/figures/scene/palette.ts'
 import { analysedRecord } from './analysed-record.ts'
 import { expectApproved } from './approved.ts'
+import { drawnText } from './drawn-text.ts'
 import { xmlProblem } from './well-formed.ts'
 
-const RECORDS = [analysedRecord(0), analysedRecord(2)]
+const RECORDS = [analysedRecord(0), analysedRecord(2), analysedRecord(1)]
 
 function figure(
   record: (typeof RECORDS)[number],
@@ -38,11 +39,13 @@ describe('the Bench figure', () => {
     [1, 178, 'density'],
     [1, 178, 'hazard'],
     [0, 178, 'neighbour'],
+    [2, 85, 'density'],
   ] as const) {
-    it(`looks as approved: emitter ${index === 0 ? 'textbook' : 'drifting'}, ${millimetres} mm, ${plot}`, () => {
+    const kind = ['textbook', 'drifting', 'dim'][index]
+    it(`looks as approved: emitter ${kind}, ${millimetres} mm, ${plot}`, () => {
       const { svg } = figure(RECORDS[index], millimetres, plot)
       expect(xmlProblem(svg)).toBeNull()
-      expectApproved(`bench-${index === 0 ? 'textbook' : 'drifting'}-${millimetres}-${plot}`, svg)
+      expectApproved(`bench-${kind}-${millimetres}-${plot}`, svg)
     })
   }
 
@@ -62,50 +65,57 @@ describe('the Bench figure', () => {
 
   it('says what a reader must know: n, law and form of its cutoff, convention, shortest fitted dwell, gate', () => {
     const text = figure(RECORDS[0], 178, 'density')
-      .svg.replace(/<[^>]+>/g, ' ')
+      .svg.replace(/<\/?tspan[^>]*>/g, '')
+      .replace(/<[^>]+>/g, ' ')
       .replace(/\s+/g, ' ')
+    const [off, on] = RECORDS[0].numbers.states
     for (const words of [
       'n = ',
       'fitted from 30 ms',
-      't^−α exp(−t/τ)',
-      'exponent of the density',
-      'off from 3 bins',
-      'Shaded: gate on',
+      'P(t) ∝ t−α exp(−t/τ)',
+      'exponent of the density, P(t) ∝ t−α',
+      'names the form of its cutoff τ',
+      'in bins of 10 ms',
+      `Off-times: ${off.dwells.complete} complete, ${off.dwells.censored} cut, ${off.dwells.startUnseen} of unseen start; fitted from 3 bins`,
+      `On-times: ${on.dwells.complete} complete, ${on.dwells.censored} cut, ${on.dwells.startUnseen} of unseen start; fitted from 3 bins`,
+      'gate-on windows ochre',
     ]) {
       expect(text).toContain(words)
     }
   })
 
-  it('has no two texts in one place', () => {
-    for (const [record, millimetres, plot] of [
-      [RECORDS[0], 85, 'density'],
-      [RECORDS[0], 178, 'density'],
-      [RECORDS[1], 178, 'density'],
-      [RECORDS[0], 178, 'survival'],
-    ] as const) {
-      const { svg } = figure(record, millimetres, plot)
-      const boxes = [
-        ...svg.matchAll(
-          /<text x="([\d.-]+)" y="([\d.-]+)" font-size="([\d.]+)" text-anchor="(\w+)"[^>]*?( transform)?[^>]*>([^<]*)<\/text>/g,
-        ),
-      ]
-        .filter((match) => !match[0].includes('transform'))
-        .map(([, x, y, size, anchor, , text]) => {
-          // Mean advance of a sans serif face is about half its size.
-          const width = 0.5 * Number(size) * text.length
-          const left = Number(x) - (anchor === 'end' ? width : anchor === 'middle' ? width / 2 : 0)
-          return { left, right: left + width, top: Number(y) - 0.7 * Number(size), bottom: Number(y), text }
-        })
-      const clashes = boxes.flatMap((a, i) =>
-        boxes
-          .slice(i + 1)
-          .flatMap((b) =>
-            a.left < b.right && b.left < a.right && a.top < b.bottom && b.top < a.bottom
-              ? [`${a.text} / ${b.text}`]
-              : [],
-          ),
-      )
-      expect(clashes).toEqual([])
+  it('has no two texts in one place, none outside the page, and no vertical mark through a text', () => {
+    const page = (value: number, end: number): boolean => value >= 0 && value <= end
+    for (const record of RECORDS) {
+      for (const millimetres of [85, 178]) {
+        for (const plot of ['density', 'neighbour', 'survival', 'hazard'] as const) {
+          const { scene } = figure(record, millimetres, plot)
+          const { texts, rules } = drawnText(scene)
+          const where = `${record.name}, ${millimetres} mm, ${plot}`
+          const outside = texts.filter(
+            ({ left, right, top, bottom }) =>
+              !page(left, scene.width) ||
+              !page(right, scene.width) ||
+              !page(top, scene.height) ||
+              !page(bottom, scene.height),
+          )
+          expect(outside.map(({ text }) => `${where}: ${text}`)).toEqual([])
+          const clashes = texts.flatMap((a, i) =>
+            texts
+              .slice(i + 1)
+              .filter((b) => a.left < b.right && b.left < a.right && a.top < b.bottom && b.top < a.bottom)
+              .map((b) => `${where}: ${a.text} / ${b.text}`),
+          )
+          expect(clashes).toEqual([])
+          const struck = rules.flatMap(([x, top, bottom]) =>
+            texts
+              .filter((box) => x > box.left && x < box.right && top < box.bottom && box.top < bottom)
+              .map((box) => `${where}: mark at ${x} through ${box.text}`),
+          )
+          expect(struck).toEqual([])
+          expect(rules.length).toBeGreaterThanOrEqual(2)
+        }
+      }
     }
   })
 

@@ -1,3 +1,4 @@
+import { formulaRuns, SCRIPT_RISE, scriptSize } from '../scene/formula-runs.ts'
 import { FONT_STACK, type Palette } from '../scene/palette.ts'
 import type { Scene } from '../scene/scene.ts'
 import { drawScene } from './draw-scene.ts'
@@ -28,6 +29,7 @@ export interface Pen {
   rotate(angle: number): void
   setLineDash(segments: number[]): void
   fillText(text: string, x: number, y: number): void
+  measureText(text: string): { readonly width: number }
 }
 
 /** Paints a scene on a canvas whose units are the scene's. */
@@ -84,11 +86,15 @@ export function canvasSurface(pen: Pen): Surface {
       pen.fill()
       pen.stroke()
     },
-    text(text, x, y, { size, colour, anchor, bold, upright }) {
+    text(text, x, y, { size, colour, anchor, bold, upright, formula }) {
       pen.fillStyle = colour
       pen.font = `${bold === true ? '600 ' : ''}${size}px ${FONT_STACK}`
       pen.textAlign = anchor === 'middle' ? 'center' : anchor
       pen.textBaseline = 'alphabetic'
+      if (formula === true && /[\^_]/.test(text)) {
+        writeFormula(pen, text, x, y, size, anchor)
+        return
+      }
       if (upright !== true) {
         pen.fillText(text, x, y)
         return
@@ -108,5 +114,33 @@ export function canvasSurface(pen: Pen): Surface {
     unclip() {
       pen.restore()
     },
+  }
+}
+
+/** Pieces of a formula one after the other; the whole is measured first when it does not start at x. */
+function writeFormula(
+  pen: Pen,
+  text: string,
+  x: number,
+  y: number,
+  size: number,
+  anchor: 'start' | 'middle' | 'end',
+): void {
+  const script = scriptSize(size)
+  const widths: number[] = []
+  let whole = 0
+  const runs = formulaRuns(text)
+  for (const run of runs) {
+    pen.font = `${run.level === 0 ? size : script}px ${FONT_STACK}`
+    const { width } = pen.measureText(run.text)
+    widths.push(width)
+    whole += width
+  }
+  let at = x - (anchor === 'start' ? 0 : anchor === 'middle' ? whole / 2 : whole)
+  pen.textAlign = 'start'
+  for (const [i, run] of runs.entries()) {
+    pen.font = `${run.level === 0 ? size : script}px ${FONT_STACK}`
+    pen.fillText(run.text, at, y - run.level * SCRIPT_RISE * size)
+    at += widths[i]
   }
 }

@@ -89,21 +89,22 @@ export function drawMark(mark: Mark, context: MarkContext): void {
     case 'rule': {
       const along = mark.across === 'x' ? at.x(mark.at) : at.y(mark.at)
       if (!Number.isFinite(along)) break
+      const foot = frame.y + (mark.to ?? 1) * frame.height
       const points =
-        mark.across === 'x' ? [along, frame.y, along, bottom] : [frame.x, along, frame.x + frame.width, along]
+        mark.across === 'x'
+          ? [along, frame.y + (mark.from ?? 0) * frame.height, along, foot]
+          : [frame.x, along, frame.x + frame.width, along]
       stroke(surface, points, mark.stroke, palette, hairline)
       if (mark.label !== undefined && mark.label !== '') {
-        const right = mark.across === 'x' && along > frame.x + 0.7 * frame.width
+        const left = mark.labelSide === 'left'
         surface.text(
           mark.label,
-          mark.across === 'x'
-            ? along + (right ? -1 : 1) * 3 * hairline
-            : frame.x + frame.width - 3 * hairline,
-          mark.across === 'x' ? bottom - 1.9 * context.fontSize : along - 3 * hairline,
+          mark.across === 'x' ? along + (left ? -3 : 3) * hairline : frame.x + frame.width - 3 * hairline,
+          mark.across === 'x' ? foot - 0.6 * context.fontSize : along - 3 * hairline,
           {
-            size: context.fontSize * 0.92,
+            size: context.fontSize,
             colour: palette[mark.stroke.role],
-            anchor: mark.across === 'x' ? (right ? 'end' : 'start') : 'end',
+            anchor: mark.across === 'x' && !left ? 'start' : 'end',
           },
         )
       }
@@ -128,6 +129,7 @@ export function drawMark(mark: Mark, context: MarkContext): void {
         size: context.fontSize,
         colour: palette[mark.role],
         anchor: mark.anchor,
+        formula: mark.formula === true,
       })
       break
   }
@@ -180,7 +182,11 @@ function drawPoints(
   surface.discs(places, mark.radius * hairline, mark.hollow ? palette.paper : colour, colour, hairline)
 }
 
-/** One thin rectangle per column from its lowest to its highest value: as fast as a canvas gets. */
+/**
+ * One thin rectangle per column from its lowest to its highest value. For 2000 columns a browser without a GPU took
+ * 1.5 ms, drawing included, with one fillRect a column, 0.9 ms with one stroked path and 21 ms with one filled path;
+ * rectangles are kept because columns need not be whole pixels.
+ */
 function drawEnvelope(
   mark: Extract<Mark, { kind: 'envelope' }>,
   { surface, palette, frame, at, hairline }: MarkContext,

@@ -1,6 +1,6 @@
 import { coordinates, shareOf, ticksOf } from '../scene/coordinates.ts'
 import type { Palette } from '../scene/palette.ts'
-import type { Axis, Frame, Panel, Scene } from '../scene/scene.ts'
+import { type Axis, type Frame, LETTER_INDENT, type Panel, type Scene } from '../scene/scene.ts'
 import { drawMark } from './draw-marks.ts'
 import type { Surface } from './surface.ts'
 
@@ -18,6 +18,7 @@ export function drawScene(scene: Scene, palette: Palette, surface: Surface): voi
       colour: palette.ink,
       anchor: note.anchor,
       bold: note.bold === true,
+      formula: note.formula === true,
     })
   }
 }
@@ -33,7 +34,7 @@ function drawPanel(panel: Panel, scene: Scene, palette: Palette, surface: Surfac
   drawAxis(panel.y, frame, scene, palette, surface)
   if (panel.letter !== '') {
     surface.text(panel.letter, frame.x - letterIndent(panel, fontSize), frame.y - 0.35 * fontSize, {
-      size: fontSize * 1.15,
+      size: fontSize * 1.14,
       colour: palette.ink,
       anchor: 'start',
       bold: true,
@@ -42,7 +43,7 @@ function drawPanel(panel: Panel, scene: Scene, palette: Palette, surface: Surfac
 }
 
 function letterIndent(panel: Panel, fontSize: number): number {
-  return panel.y.side === 'left' ? 3.2 * fontSize : 0
+  return panel.y.side === 'left' ? LETTER_INDENT * fontSize : 0
 }
 
 function drawAxis(
@@ -64,6 +65,7 @@ function drawAxis(
   for (const { value, label } of ticksOf(axis, length, fontSize)) {
     const share = shareOf(axis, value)
     if (share < -1e-9 || share > 1 + 1e-9) continue
+    if (axis.ticksFrom !== undefined && value < axis.ticksFrom) continue
     const size = sign * (label === '' ? MINOR_TICK : TICK) * fontSize
     const along = horizontal ? frame.x + share * frame.width : frame.y + (1 - share) * frame.height
     lines.push(Number.NaN, Number.NaN)
@@ -90,7 +92,7 @@ function drawAxis(
     const y = sign > 0 ? edge + 2.55 * fontSize : edge - 1.75 * fontSize
     surface.text(axis.label, middle, y, { size: fontSize, colour: palette.ink, anchor: 'middle' })
   } else {
-    const x = edge + sign * (1.35 + 0.56 * Math.max(2, numbers)) * fontSize
+    const x = edge + sign * (axis.labelDistance ?? (1.35 + 0.56 * Math.max(2, numbers)) * fontSize)
     surface.text(axis.label, x, middle, {
       size: fontSize,
       colour: palette.ink,

@@ -21,4 +21,6 @@ export interface TextOptions {
   readonly bold?: boolean
   /** Turned a quarter anticlockwise. */
   readonly upright?: boolean
+  /** `^` raises and `_` lowers what follows, see `formulaRuns`; off for text that came from a user. */
+  readonly formula?: boolean
 }

@@ -1,5 +1,6 @@
 import { embedMetadata, type FigureMetadata } from '../scene/figure-metadata.ts'
 import { FONT_STACK, type Palette } from '../scene/palette.ts'
+import { formulaRuns, SCRIPT_RISE, scriptSize } from '../scene/formula-runs.ts'
 import type { Scene } from '../scene/scene.ts'
 import { escapeXml } from '../scene/xml-text.ts'
 import { drawScene } from './draw-scene.ts'
@@ -17,6 +18,22 @@ function paint(attribute: 'fill' | 'stroke', colour: string): string {
   if (rgba === null) return `${attribute}="${colour}"`
   const hex = [rgba[1], rgba[2], rgba[3]].map((part) => Number(part).toString(16).padStart(2, '0')).join('')
   return `${attribute}="#${hex}" ${attribute}-opacity="${rgba[4]}"`
+}
+
+/** Raised and lowered pieces as spans; each undoes the shift of the one before it. */
+function formulaSpans(text: string, size: number): string {
+  let level = 0
+  let out = ''
+  for (const run of formulaRuns(text)) {
+    const shift = (level - run.level) * SCRIPT_RISE * size
+    level = run.level
+    const words = escapeXml(run.text)
+    out +=
+      shift === 0 && level === 0
+        ? words
+        : `<tspan dy="${n(shift)}"${level === 0 ? '' : ` font-size="${n(scriptSize(size))}"`}>${words}</tspan>`
+  }
+  return out
 }
 
 /**
@@ -69,11 +86,13 @@ export function sceneToSvg(
         )
       }
     },
-    text(text, x, y, { size, colour, anchor, bold, upright }) {
+    text(text, x, y, { size, colour, anchor, bold, upright, formula }) {
       const turn = upright === true ? ` transform="rotate(-90 ${n(x)} ${n(y)})"` : ''
       const weight = bold === true ? ' font-weight="700"' : ''
+      // Spaces at the edges of spans are dropped by some readers unless told not to.
+      const keep = formula === true && /[\^_]/.test(text) ? ' xml:space="preserve"' : ''
       parts.push(
-        `<text x="${n(x)}" y="${n(y)}" font-size="${n(size)}" text-anchor="${anchor}" ${paint('fill', colour)}${weight}${turn}>${escapeXml(text)}</text>`,
+        `<text x="${n(x)}" y="${n(y)}" font-size="${n(size)}" text-anchor="${anchor}" ${paint('fill', colour)}${weight}${turn}${keep}>${formula === true ? formulaSpans(text, size) : escapeXml(text)}</text>`,
       )
     },
     clip(x, y, width, height) {

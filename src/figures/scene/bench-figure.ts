@@ -1,9 +1,10 @@
 import type { ThresholdProduct, TraceProduct } from '../../core/pipeline/analysis-products.ts'
 import type { BenchNumbers } from '../../core/pipeline/emitter-numbers.ts'
-import { roundTo, siDuration } from '../../core/numeric/units.ts'
+import { benchCaption, type Paragraph } from './bench-caption.ts'
 import { dwellDomains, type DwellPlotKind, dwellsAtThreshold } from './dwells-at-threshold.ts'
 import { recordHistogram } from './histogram-of-record.ts'
-import type { Frame, Panel, Scene } from './scene.ts'
+import { type Frame, LETTER_INDENT, type Note, type Panel, type Scene } from './scene.ts'
+import { wrapText } from './text-width.ts'
 import {
   countsDomain,
   fillColumns,
@@ -26,8 +27,12 @@ export interface BenchFigureInput {
 }
 
 const POINTS_PER_MILLIMETRE = 72 / 25.4
-const FONT = 6.5
+const FONT = 7
+const CAPTION = 6.5
 const HAIRLINE = 0.5
+/** One distance for the labels of all left axes, so that they stand in line. */
+const LABEL_DISTANCE = 24.5
+const RIGHT = 5
 /** Columns of the trace per point of width: finer than print shows. */
 const COLUMNS_PER_POINT = 4
 
@@ -38,16 +43,16 @@ const COLUMNS_PER_POINT = 4
 export function benchFigure(input: BenchFigureInput): Scene {
   const width = input.millimetres * POINTS_PER_MILLIMETRE
   const wide = input.millimetres > 120
-  const left = 31
+  const left = 33
   const upperHeight = wide ? 105 : 78
   const lowerHeight = wide ? 142 : 108
   const histogramWidth = wide ? 58 : 38
-  const gap = 7
+  const gap = wide ? 9 : 11
   const top = 15
   const traceFrame: Frame = {
     x: left,
     y: top,
-    width: width - left - histogramWidth - gap - 5,
+    width: width - left - histogramWidth - gap - RIGHT,
     height: upperHeight,
   }
   const histogramFrame: Frame = {
@@ -58,7 +63,7 @@ export function benchFigure(input: BenchFigureInput): Scene {
   }
   const lowerTop = top + upperHeight + 34
   const stacked = !wide
-  const plotWidth = stacked ? width - left - 5 : (width - 2 * left - 14) / 2
+  const plotWidth = stacked ? width - left - RIGHT : (width - 2 * left - 9 - RIGHT) / 2
   const plotFrame = (index: number): Frame => ({
     x: stacked ? left : left + index * (plotWidth + left + 9),
     y: stacked ? lowerTop + index * (lowerHeight + 34) : lowerTop,
@@ -114,46 +119,36 @@ export function benchFigure(input: BenchFigureInput): Scene {
     },
     ...dwells,
   ]
-  const bottom = plotFrame(1).y + lowerHeight + 24
-  const lines = captionLines(input, wide ? 150 : 70)
+  const bottom = plotFrame(1).y + lowerHeight + 29
+  const edge = left - LETTER_INDENT * FONT
+  const notes = captionNotes(benchCaption(input), edge, bottom, width - edge - RIGHT)
   return {
     width,
-    height: bottom + lines.length * FONT * 1.25 + 5,
+    height: (notes.at(-1)?.y ?? bottom) + 0.5 * CAPTION + 3,
     unit: 'pt',
     fontSize: FONT,
     hairline: HAIRLINE,
-    panels,
-    notes: lines.map((text, index) => ({
-      x: left - 20,
-      y: bottom + (index + 0.8) * FONT * 1.25,
-      text,
-      anchor: 'start',
-      size: FONT - 0.3,
-    })),
+    panels: panels.map((panel) =>
+      panel.y.side === 'left' ? { ...panel, y: { ...panel.y, labelDistance: LABEL_DISTANCE } } : panel,
+    ),
+    notes,
   }
 }
 
-/** What a reader must know to use the figure: bins, threshold, conventions, censoring. */
-function captionLines({ trace, numbers, name, confidence }: BenchFigureInput, width: number): string[] {
-  const bin = siDuration(trace.levelled.binSeconds)
-  const [off, on] = numbers.states
-  const gated = (trace.gate?.windows ?? []).some(({ gateClass }) => gateClass === 'driven')
-    ? 'Shaded: gate on. '
-    : ''
-  const text =
-    `${name}: ${siDuration(trace.durationSeconds, 4)} in bins of ${bin}; on at ${numbers.threshold} counts or more ` +
-    `(${roundTo(numbers.countsAboveBaseline, null, 3)} above the ${numbers.baseline.method} baseline). ` +
-    `α is the exponent of the density, P(t) ∝ t^−α; the law shown names the form of its cutoff τ. ` +
-    `Lines: maximum likelihood with bin-exact probabilities, solid over the fitted range (off from ${off.fits.shortest.bins} bins, ` +
-    `on from ${on.fits.shortest.bins} bins); brackets: ${Number((100 * confidence).toPrecision(3))} % profile-likelihood intervals. ` +
-    `Bars: exact Poisson. ${gated}Dwells cut: ${off.dwells.censored + on.dwells.censored}; of unseen start, not fitted: ${off.dwells.startUnseen + on.dwells.startUnseen}.`
-  const lines: string[] = []
-  let line = ''
-  for (const word of text.split(' ')) {
-    if (line.length + word.length + 1 > width) {
-      lines.push(line)
-      line = word
-    } else line = line === '' ? word : `${line} ${word}`
+/** Paragraphs wrapped to a width, the first line of each at its own place. */
+function captionNotes(paragraphs: readonly Paragraph[], x: number, top: number, width: number): Note[] {
+  const notes: Note[] = []
+  for (const { text, formula } of paragraphs) {
+    for (const line of wrapText(text, CAPTION, width)) {
+      notes.push({
+        x,
+        y: top + (notes.length + 0.8) * CAPTION * 1.3,
+        text: line,
+        anchor: 'start',
+        size: CAPTION,
+        formula,
+      })
+    }
   }
-  return [...lines, line]
+  return notes
 }

@@ -1,4 +1,7 @@
+import { beneathLegend, dwellLegend } from './dwell-legend.ts'
+import { type RiskCounts, riskMarks, shareOnLog } from './risk-strip.ts'
 import type { Frame, Mark, Panel } from './scene.ts'
+import { textWidth } from './text-width.ts'
 
 export interface DwellPoints {
   readonly seconds: ArrayLike<number>
@@ -35,15 +38,15 @@ export interface DwellPanelInput {
   readonly hover: readonly [number, number] | null
   readonly cut: ArrayLike<number>
   /** Numbers at risk under the survival curve: durations (s) and numbers. */
-  readonly atRisk: { readonly seconds: ArrayLike<number>; readonly numbers: ArrayLike<number> } | null
+  readonly atRisk: RiskCounts | null
   /** Lines of text in the upper right corner: n, law, numbers. */
   readonly legend: readonly string[]
   readonly xDomain: readonly [number, number]
   readonly yDomain: readonly [number, number]
   readonly letter: string
   readonly axisTitle: boolean
-  /** Distance of lines of the legend, figure units. */
-  readonly lineHeight: number
+  /** Font size of the scene, figure units. */
+  readonly fontSize: number
 }
 
 const Y_LABEL = {
@@ -55,37 +58,53 @@ const Y_LABEL = {
 
 /** Dwell times of one state on logarithmic axes, with everything that says how far to trust them. */
 export function dwellPanel(input: DwellPanelInput): Panel {
-  const { state, plot } = input
+  const { state, plot, frame, fontSize } = input
   const soft = state === 'on' ? 'on-soft' : 'off-soft'
   const marks: Mark[] = []
   const { hover, steps, curve } = input
+  const along = (seconds: number): number => shareOnLog(seconds, input.xDomain) * frame.width
+  const shortest = input.shortestSeconds === null ? null : along(input.shortestSeconds)
+  const corner = plot === 'hazard' ? 'left' : 'right'
+  const legend = dwellLegend(input.legend, corner, frame, fontSize, corner === 'left' ? shortest : null)
+  // Numbers at risk have a strip of their own below everything drawn; the axis is stretched down by it.
+  const strip = input.atRisk === null ? 0 : Math.min(0.25, (2.5 * fontSize) / frame.height)
+  const [floor, top] = input.yDomain
+  const yDomain: [number, number] = [floor / (top / floor) ** (strip / (1 - strip)), top]
   if (hover !== null) marks.push({ kind: 'span', from: hover[0], to: hover[1], fill: 'hover' })
   if (plot === 'density') {
-    marks.push({ kind: 'boxes', boxes: stacked(input.split, input.yDomain[0]), fill: 'split' })
-    marks.push({ kind: 'boxes', boxes: stacked(input.spurious, input.yDomain[0]), fill: 'spurious' })
+    marks.push({ kind: 'boxes', boxes: stacked(input.split, floor), fill: 'split' })
+    marks.push({ kind: 'boxes', boxes: stacked(input.spurious, floor), fill: 'spurious' })
   }
+  const extent = (place: number): { from: number; to: number } => ({
+    from: beneathLegend(legend, place, frame, fontSize),
+    to: 1 - strip,
+  })
   if (input.artefactSeconds !== null) {
+    const place = along(input.artefactSeconds)
     marks.push({
       kind: 'rule',
       across: 'x',
       at: input.artefactSeconds,
       stroke: { role: 'artefact', weight: 1.2, dash: [2, 2] },
-      label: 'artefact cutoff',
+      label: ARTEFACT,
+      labelSide: leftIsFree(place, shortest, fontSize) ? 'left' : 'right',
+      ...extent(place),
     })
   }
-  if (input.shortestSeconds !== null) {
+  if (input.shortestSeconds !== null && shortest !== null) {
     marks.push({
       kind: 'rule',
       across: 'x',
       at: input.shortestSeconds,
       stroke: { role: 'soft', weight: 1, dash: [4, 2] },
+      ...extent(shortest),
     })
   }
   if (steps !== null) {
     marks.push({
       kind: 'area',
       xs: steps.seconds,
-      lows: steps.lows,
+      lows: Array.from(steps.lows, (low) => Math.max(low, floor)),
       highs: steps.highs,
       fill: soft,
       steps: true,
@@ -93,7 +112,7 @@ export function dwellPanel(input: DwellPanelInput): Panel {
     marks.push({
       kind: 'line',
       xs: steps.seconds,
-      ys: steps.values,
+      ys: atLeast(steps.values, floor),
       stroke: { role: state, weight: 1.6 },
       steps: true,
     })
@@ -108,7 +127,7 @@ export function dwellPanel(input: DwellPanelInput): Panel {
       radius: 3,
     })
   }
-  marks.push(...curveMarks(curve))
+  marks.push(...curveMarks(curve, strip > 0 ? floor : 0))
   marks.push({
     kind: 'limits',
     xs: input.limits.seconds,
@@ -125,24 +144,8 @@ export function dwellPanel(input: DwellPanelInput): Panel {
     hollow: state === 'off',
     radius: 3.2,
   })
-  if (input.atRisk !== null) {
-    const { seconds, numbers } = input.atRisk
-    for (let i = 0; i < seconds.length; i++) {
-      const x = Math.log(seconds[i] / input.xDomain[0]) / Math.log(input.xDomain[1] / input.xDomain[0])
-      marks.push({ kind: 'text', x, y: 0.965, text: String(numbers[i]), anchor: 'middle', role: 'soft' })
-    }
-    marks.push({ kind: 'text', x: 0.01, y: 0.9, text: 'numbers at risk', anchor: 'start', role: 'soft' })
-  }
-  for (const [index, text] of input.legend.entries()) {
-    marks.push({
-      kind: 'text',
-      x: plot === 'hazard' ? 0.03 : 0.975,
-      y: legendPlace(input, index),
-      text,
-      anchor: plot === 'hazard' ? 'start' : 'end',
-      role: index === 0 ? 'ink' : 'soft',
-    })
-  }
+  if (input.atRisk !== null) marks.push(...riskMarks(input, input.atRisk, 1 - strip, floor))
+  marks.push(...legend.marks)
   return {
     frame: input.frame,
     x: {
@@ -152,16 +155,24 @@ export function dwellPanel(input: DwellPanelInput): Panel {
       side: 'bottom',
       ticks: 5,
     },
-    y: { kind: 'log', domain: input.yDomain, label: Y_LABEL[plot], side: 'left', ticks: 5 },
+    y: { kind: 'log', domain: yDomain, label: Y_LABEL[plot], side: 'left', ticks: 5, ticksFrom: floor },
     marks,
     letter: input.letter,
     description: `${state === 'on' ? 'On-times' : 'Off-times'}, ${plot}: ${input.legend.join('; ')}.`,
   }
 }
 
-function legendPlace({ frame, lineHeight }: DwellPanelInput, index: number): number {
-  const line = Math.min(lineHeight, frame.height / 8)
-  return (line * (index + 1.05)) / frame.height
+const ARTEFACT = 'artefact cutoff'
+
+/** Below falling curves the left of a mark is free; not so when the frame or the shortest fitted dwell is close. */
+function leftIsFree(place: number, shortest: number | null, fontSize: number): boolean {
+  const needed = textWidth(ARTEFACT, fontSize) + fontSize
+  return place > needed && (shortest === null || shortest > place || place - shortest > needed)
+}
+
+/** Values below the floor have no place above the strip: the line ends there. Floor 0 leaves all to the frame's cut. */
+function atLeast(values: ArrayLike<number>, floor: number): number[] {
+  return Array.from(values, (value) => (value < floor ? Number.NaN : value))
 }
 
 function stacked(stretches: ArrayLike<number>, floor: number): number[] {
@@ -179,7 +190,7 @@ function stepValue(steps: DwellPoints, at: number): number {
 }
 
 /** Solid over the fitted range, dashed outside it. */
-function curveMarks(curve: DwellPanelInput['curve']): Mark[] {
+function curveMarks(curve: DwellPanelInput['curve'], floor: number): Mark[] {
   if (curve === null) return []
   const parts: { xs: number[]; ys: number[]; inside: boolean }[] = []
   for (let i = 0; i < curve.seconds.length; i++) {
@@ -197,7 +208,7 @@ function curveMarks(curve: DwellPanelInput['curve']): Mark[] {
   return parts.map(({ xs, ys, inside }) => ({
     kind: 'line',
     xs,
-    ys,
+    ys: atLeast(ys, floor),
     stroke: inside ? { role: 'ink', weight: 1.5 } : { role: 'ink', weight: 1, dash: [3, 3] },
   }))
 }

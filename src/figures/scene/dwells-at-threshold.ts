@@ -113,7 +113,7 @@ export function dwellsAtThreshold(
     yDomain: domains.y,
     letter: options.letter,
     axisTitle: true,
-    lineHeight: 1.3 * options.fontSize,
+    fontSize: options.fontSize,
   })
 }
 
@@ -233,6 +233,6 @@ export function legendOf(fit: Fit | null, sample: DwellSample, binSeconds: numbe
     const shown = text.startsWith('>') || text.startsWith('<') ? text : `= ${text}`
     lines.push(`${parameter.symbol} ${shown} ${interval === 'bound' ? '' : interval}`.trim())
   }
-  if (fit.weight !== null) lines.push(`weight ${fit.weight < 0.005 ? '< 0.01' : fit.weight.toFixed(2)}`)
+  if (fit.weight !== null) lines.push(`AICc weight ${fit.weight < 0.005 ? '< 0.01' : fit.weight.toFixed(2)}`)
   return lines
 }

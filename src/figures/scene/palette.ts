@@ -33,7 +33,7 @@ export const LIGHT: Palette = {
   faint: '#8a9098',
   hair: '#d5d6d3',
   paper: '#ffffff',
-  trace: '#59616a',
+  trace: '#79828b',
   on: '#d55e00',
   off: '#0072b2',
   'on-soft': 'rgba(213,94,0,0.20)',

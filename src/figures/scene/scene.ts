@@ -14,6 +14,9 @@ export interface Scene {
   readonly notes: readonly Note[]
 }
 
+/** Distance of a panel's letter from the left axis, font sizes. */
+export const LETTER_INDENT = 3.2
+
 export interface Frame {
   readonly x: number
   readonly y: number
@@ -31,6 +34,10 @@ export interface Axis {
   readonly side: 'bottom' | 'top' | 'left' | 'right' | 'none'
   /** About how many labelled ticks on a linear axis. */
   readonly ticks: number
+  /** Values below it have no tick: they lie in a strip with text of its own. */
+  readonly ticksFrom?: number
+  /** Distance of a vertical axis' label from the axis, figure units; by the widest number unless given. */
+  readonly labelDistance?: number
 }
 
 export interface Panel {
@@ -97,6 +104,12 @@ export type Mark =
       readonly at: number
       readonly stroke: Stroke
       readonly label?: string
+      /** Side of the label of a rule across x; right unless said. */
+      readonly labelSide?: 'left' | 'right'
+      /** Rules across x begin at this share of the frame from its top, to leave room for text; 0 unless said. */
+      readonly from?: number
+      /** Where they end, share from the top; 1 unless said. The label stands at this foot. */
+      readonly to?: number
     }
   | {
       readonly kind: 'span'
@@ -128,6 +141,8 @@ export type Mark =
       readonly text: string
       readonly anchor: 'start' | 'middle' | 'end'
       readonly role: Role
+      /** Powers and indices as `^` and `_`, see `formulaRuns`. */
+      readonly formula?: boolean
     }
 
 export interface Note {
@@ -137,4 +152,5 @@ export interface Note {
   readonly anchor: 'start' | 'middle' | 'end'
   readonly size: number
   readonly bold?: boolean
+  readonly formula?: boolean
 }

@@ -1,4 +1,5 @@
 import { baselineBandCps, baselineCps } from '../../core/baseline/baseline-at.ts'
+import type { Gate, GateClass } from '../../core/photons/gate.ts'
 import { envelope } from '../../core/photons/pyramid.ts'
 import type { TraceProduct } from '../../core/pipeline/analysis-products.ts'
 import { roundTo, siDuration } from '../../core/numeric/units.ts'
@@ -138,6 +139,15 @@ export function unsupportedSpans({ baseline }: TraceProduct): [number, number][]
   return spans
 }
 
+/** Windows of one class that reach into what is shown, s. */
+function windowsOf(gate: Gate | null, wanted: GateClass, [from, to]: readonly [number, number]) {
+  const spans: [number, number][] = []
+  for (const { gateClass, startSeconds, endSeconds } of gate?.windows ?? []) {
+    if (gateClass === wanted && endSeconds > from && startSeconds < to) spans.push([startSeconds, endSeconds])
+  }
+  return spans
+}
+
 export interface RecordPanelOptions {
   readonly frame: Frame
   readonly window: readonly [number, number]
@@ -162,9 +172,8 @@ export function recordPanel(product: TraceProduct, options: RecordPanelOptions):
     highs: columns.drawnHighs,
     columns: columns.columns,
     baseline: baselineCurve(product, window),
-    driven: (gate?.windows ?? [])
-      .filter(({ gateClass }) => gateClass === 'driven')
-      .map(({ startSeconds, endSeconds }) => [startSeconds, endSeconds] as const),
+    driven: windowsOf(gate, 'driven', window),
+    sham: windowsOf(gate, 'sham', window),
     unsupported: unsupportedSpans(product),
     excluded: options.excluded,
     letter: options.letter,

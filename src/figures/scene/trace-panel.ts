@@ -19,7 +19,9 @@ export interface TracePanelInput {
     readonly low: ArrayLike<number>
     readonly high: ArrayLike<number>
   } | null
+  /** Windows of the gate by class, s. */
   readonly driven: readonly (readonly [number, number])[]
+  readonly sham: readonly (readonly [number, number])[]
   readonly unsupported: readonly (readonly [number, number])[]
   readonly excluded: readonly (readonly [number, number])[]
   readonly description: string
@@ -32,6 +34,7 @@ export interface TracePanelInput {
 export function tracePanel(input: TracePanelInput): Panel {
   const marks: Mark[] = [
     ...input.driven.map(([from, to]): Mark => ({ kind: 'span', from, to, fill: 'driven' })),
+    ...input.sham.map(([from, to]): Mark => ({ kind: 'span', from, to, fill: 'sham' })),
     ...input.excluded.map(([from, to]): Mark => ({ kind: 'span', from, to, fill: 'guard' })),
     { kind: 'envelope', lows: input.lows, highs: input.highs, columns: input.columns, role: 'trace' },
     ...input.unsupported.map(

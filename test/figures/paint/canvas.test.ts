@@ -35,6 +35,8 @@ function recordingPen() {
     rotate: note('rotate'),
     setLineDash: note('setLineDash'),
     fillText: note('fillText'),
+    // Every letter one unit wide.
+    measureText: (text) => ({ width: text.length }),
   }
   const of = (name: string): (readonly unknown[])[] =>
     calls.filter((call) => call.name === name).map(({ values }) => values)
@@ -110,6 +112,26 @@ describe('the canvas painter', () => {
     expect(bars[0][1]).toBeCloseTo(90 - 0.5, 9)
     expect(bars[0][3]).toBeCloseTo(10 + 1, 9)
     expect(bars[2][3]).toBeCloseTo(1, 9)
+  })
+
+  it('raises powers after what stands before them, the whole ending at its anchor, and leaves plain text alone', () => {
+    const { pen, of } = recordingPen()
+    const text = { kind: 'text', x: 1, y: 0.5, anchor: 'end', role: 'ink' } as const
+    paintScene(
+      sceneOf([
+        { ...text, text: 'at^−α b', formula: true },
+        { ...text, text: 'emitter_1' },
+      ]),
+      LIGHT,
+      pen,
+    )
+    const [first, power, last, plain] = of('fillText')
+    expect(first).toEqual(['at', 104, 60])
+    expect(power[0]).toBe('−α')
+    expect(power[1]).toBe(106)
+    expect(power[2]).toBeLessThan(60)
+    expect(last).toEqual([' b', 108, 60])
+    expect(plain).toEqual(['emitter_1', 110, 60])
   })
 
   it('joins equal neighbouring states into one box, and draws cut ones hollow', () => {
