@@ -105,5 +105,13 @@ export function benchNumbers(
     ),
     states,
   }
-  return { ...numbers, flags: flagsOf(numbers, recordSeconds, levelled.binSeconds) }
+  const flags = flagsOf(numbers, recordSeconds, levelled.binSeconds)
+  const { gate } = recipe.dwells
+  if (gate !== dwells.gate) {
+    flags.unshift({
+      key: 'no-such-gate',
+      sentence: `The recipe asks for dwells under the gate class “${gate}”, which this record does not have: all its dwells were used.`,
+    })
+  }
+  return { ...numbers, flags }
 }

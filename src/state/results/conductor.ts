@@ -1,7 +1,7 @@
 import type { StoreApi } from 'zustand/vanilla'
 import type { RowFits, ThresholdProduct, TraceProduct } from '../../core/pipeline/analysis-products.ts'
 import type { BenchNumbers } from '../../core/pipeline/emitter-numbers.ts'
-import { rowOf } from '../../core/pipeline/study-thresholds.ts'
+import { rowOf, thresholdOf } from '../../core/pipeline/study-thresholds.ts'
 import type { Recipe } from '../../core/recipe/recipe.ts'
 import type { EmitterEntry } from '../../session/schema/session.ts'
 import type { AnalysisRequest, Outcome } from '../../worker/protocol/service.ts'
@@ -25,6 +25,8 @@ export interface Conductor {
   /** The threshold in force, counts; null before the table has come. */
   threshold(): number | null
   request(): Promise<AnalysisRequest | null>
+  /** Computes everything once more, e.g. after a failure. */
+  again(): void
 }
 
 const SETTLE_AFTER_MILLISECONDS = 180
@@ -86,7 +88,9 @@ export function conductor(
     const product = shown(results.getState().thresholds)
     if (here === null || product === null) return null
     const { rule, handCounts } = here.recipe.threshold
-    return rule === 'hand' && handCounts !== null ? handCounts : product.byRule.counts
+    const wanted = rule === 'hand' && handCounts !== null ? handCounts : product.byRule.counts
+    // What is in force is a row of the table: a number set by hand beyond its ends, or between its steps, is not.
+    return thresholdOf(product.table, rowOf(product.table, wanted))
   }
 
   const runTrace = async (emitter: EmitterEntry, recipe: Recipe, key: string): Promise<void> => {
@@ -214,6 +218,10 @@ export function conductor(
   return {
     refresh,
     threshold,
+    again() {
+      traceKey = ''
+      refresh()
+    },
     async request() {
       const here = now()
       return here === null ? null : requestFor(here.emitter, here.recipe)

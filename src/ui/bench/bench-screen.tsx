@@ -3,6 +3,7 @@ import type { Palette } from '../../figures/scene/palette.ts'
 import { rowOf } from '../../core/pipeline/study-thresholds.ts'
 import { shown } from '../../state/results/results-store.ts'
 import { useApp, useChoices, useResults, useView } from '../bridge/app-context.tsx'
+import { Button } from '../controls/button.tsx'
 import { benchNow } from './bench-state.ts'
 import { DwellView } from './dwell-view.tsx'
 import { liveReading } from './live-reading.ts'
@@ -46,7 +47,7 @@ export function BenchScreen({ palette }: { palette: Palette }) {
       ) : (
         <div className="plot">
           <p className="notice bad" role="alert">
-            {failure}
+            {failure} <Button onClick={() => app.conductor.again()}>Try again</Button>
           </p>
         </div>
       )}

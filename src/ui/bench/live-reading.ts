@@ -198,6 +198,7 @@ function stateReading(
         fits === null ? WAITING : siDuration(fits.shortest.bins * binSeconds),
         fits === null ? '' : `${fits.shortest.bins} bins: ${fits.shortest.rule}`,
         'shortest',
+        fits !== null && fits.shortest.message !== '' ? fits.shortest.message : null,
       ),
       line(
         'artefact',
