@@ -26,9 +26,8 @@ export function refusalFault(problem: ReadProblem, bytes: Uint8Array, name: stri
 export function dataFault(read: Read, bytes: Uint8Array, answer: ImportAnswer): string | null {
   const slow = slowRead(bytes, answer)
   if (slow === null) return 'read what the slow reader cannot'
-  const beside = answer.kind === 'text' && answer.columns.includes('arrival') ? answer.columns : []
-  const unused = beside.filter((role) => role !== 'arrival' && role !== 'ignore').length
-  if (unused > 0 && !read.notes.some((note) => note.includes(`${unused} column`)))
+  const unused = answer.kind === 'text' ? columnsUnused(answer.columns) : 0
+  if (unused > 0 && !read.notes.some((note) => new RegExp(`\\b${unused} (more )?column`).test(note)))
     return 'columns left out in silence'
   if (slow.columns.length !== read.records.length)
     return `${read.records.length} records of ${slow.columns.length}`
@@ -40,6 +39,14 @@ export function dataFault(read: Read, bytes: Uint8Array, answer: ImportAnswer): 
     if (fault !== null) return `record ${i + 1}: ${fault}`
   }
   return null
+}
+
+/** Columns that have a part in the answer but none in the records. */
+function columnsUnused(columns: readonly string[]): number {
+  const arrival = columns.indexOf('arrival')
+  if (arrival >= 0) return columns.filter((role, i) => role !== 'ignore' && i !== arrival).length
+  return columns.filter((role, i) => (role === 'time' || role === 'gate') && columns.indexOf(role) !== i)
+    .length
 }
 
 function photonFault(

@@ -1,18 +1,20 @@
 import type { ByteSource } from './byte-source.ts'
 import { asciiText } from './decimal.ts'
-import { type ArrayAnswer, type ImportAnswer, missingAnswers, type TimeUnit } from './import-answer.ts'
+import { firstText } from './first-text.ts'
+import type { ArrayAnswer, ImportAnswer, TimeUnit } from './import-answer.ts'
+import { type ImportQuestion, questionsOf } from './import-question.ts'
 import { isNpy, type NpyHeader, readNpyHeader } from './npy-header.ts'
-import { readNpyValues } from './npy-values.ts'
 import { npzMembers } from './npz-members.ts'
 import { ReadFailure, type ReadProblem } from './read-problem.ts'
+import { roleIn } from './said-by-name.ts'
+import { startsRising } from './starts-rising.ts'
 import { type TextShape, textShape } from './text-shape.ts'
-import { utf8Text } from './utf8-text.ts'
 import { isZip } from './zip-directory.ts'
 
-/** A question the file does not answer; the answer goes into the field of the same name. */
-export interface ImportQuestion {
-  readonly key: 'timeUnit' | 'binSeconds' | 'content' | 'columns'
-  readonly text: string
+/** One array of an archive. */
+export interface ArrayProposal {
+  readonly dimensions: number
+  readonly answer: ArrayAnswer
 }
 
 /** What was understood of a file before it is read; plain JSON. */
@@ -27,6 +29,8 @@ export interface Preview {
   readonly rows: readonly (readonly string[])[]
   /** Arrays of an archive. */
   readonly members: readonly string[]
+  /** Arrays of an archive with the way each would be read; the first is the one proposed. */
+  readonly arrays: readonly ArrayProposal[]
   readonly dimensions: number
   readonly answer: ImportAnswer | null
   readonly questions: readonly ImportQuestion[]
@@ -37,32 +41,8 @@ export interface Preview {
   readonly problem: ReadProblem | null
 }
 
-const PREVIEW_BYTES = 1 << 18
 const PREVIEW_ROWS = 12
 const MOST_COLUMNS = 4096
-const FIRST_ITEMS = 4096
-
-const QUESTIONS: Readonly<Record<ImportQuestion['key'], string>> = {
-  timeUnit: 'In which unit are the times?',
-  binSeconds: 'How long is one bin?',
-  content: 'Are the numbers arrival times or counts per bin?',
-  columns: 'Which columns hold counts or arrival times?',
-}
-
-/** Questions that an answer leaves open. */
-export function questionsOf(answer: ImportAnswer): ImportQuestion[] {
-  return missingAnswers(answer).map((key) => ({ key, text: QUESTIONS[key] }))
-}
-
-/** First lines of a text file; what lies beyond the last complete line is left out. */
-export async function firstText(source: ByteSource): Promise<string> {
-  const bytes = await source.read(0, Math.min(source.size, PREVIEW_BYTES))
-  const from = bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf ? 3 : 0
-  const text = utf8Text(bytes.subarray(from))
-  if (bytes.length === source.size) return text
-  const cut = Math.max(text.lastIndexOf('\n'), text.lastIndexOf('\r'))
-  return cut > 0 ? text.slice(0, cut) : text
-}
 
 /** Looks at the beginning of a file and proposes how to read it. Never throws on data: see `problem`. */
 export async function previewSource(source: ByteSource): Promise<Preview> {
@@ -99,6 +79,7 @@ function refused(source: ByteSource, what: string): Preview {
     header: [],
     rows: [],
     members: [],
+    arrays: [],
     dimensions: 0,
     answer: null,
     questions: [],
@@ -130,8 +111,8 @@ async function previewText(source: ByteSource): Promise<Preview> {
       source,
       `it has ${answer.columns.length} columns, at most ${MOST_COLUMNS} are read. Turn the table, or save it in parts.`,
     )
-  const questions = questionsOf(answer)
   const only = answer.columns.length === 1 && !shape.rolesSaid
+  const guessedUnit = guessUnit(shape)
   return {
     ...refused(source, ''),
     kind: 'text',
@@ -143,8 +124,8 @@ async function previewText(source: ByteSource): Promise<Preview> {
     rows: shape.rows.slice(0, PREVIEW_ROWS),
     dimensions: 2,
     answer,
-    questions: only ? [{ key: 'content', text: QUESTIONS.content }, ...questions] : questions,
-    guessedUnit: guessUnit(shape),
+    questions: questionsOf(answer, { unit: guessedUnit, content: answer.columns[0] }, only),
+    guessedUnit,
     shapeSignature: [
       'text',
       answer.delimiter,
@@ -156,10 +137,22 @@ async function previewText(source: ByteSource): Promise<Preview> {
   }
 }
 
-function understoodTime({ answer, step }: TextShape): string[] {
-  if (answer.columns.includes('arrival')) return ['The times are taken as arrival times of photons.']
-  if (!answer.columns.includes('time')) return ['No column of times: every row is one bin.']
-  return step === null ? [] : [`The time advances by ${Number(step.toPrecision(6))} per row.`]
+function understoodTime({ answer, header, step }: TextShape): string[] {
+  const { columns, timeUnit, tickSeconds } = answer
+  const unit = timeUnit === null ? '' : timeUnit === 'ticks' ? ` x ${tickSeconds} s` : ` ${timeUnit}`
+  if (columns.includes('arrival')) {
+    const more = header.filter((name) => roleIn(name) === 'arrival').length - 1
+    return [
+      'The times are taken as arrival times of photons.',
+      ...(more > 0
+        ? [
+            `Only the first of ${more + 1} columns of arrival times is read; save the others in files of their own.`,
+          ]
+        : []),
+    ]
+  }
+  if (!columns.includes('time')) return ['No column of times: every row is one bin.']
+  return step === null ? [] : [`The time advances by ${Number(step.toPrecision(6))}${unit} per row.`]
 }
 
 /** Bins are usually 1 to 100 ms and records minutes long; the guess that fits best. */
@@ -175,8 +168,7 @@ function guessUnit({ answer, step, rows }: TextShape): TimeUnit | null {
 
 async function previewNpy(source: ByteSource): Promise<Preview> {
   const header = await readNpyHeader(source)
-  const rising = header.shape.length === 1 && (await startsRising(source, header))
-  return previewOfArray(source, header, { kind: 'npy', member: null }, rising, [])
+  return previewOfArray(source, header, { kind: 'npy', member: null }, await startsRising(source, header))
 }
 
 async function previewNpz(source: ByteSource): Promise<Preview> {
@@ -188,37 +180,38 @@ async function previewNpz(source: ByteSource): Promise<Preview> {
       'the archive holds no NumPy arrays. A session file is opened by dropping it, not as data.',
     )
   const [first] = members
-  const preview = previewOfArray(
-    source,
-    first.header,
-    { kind: 'npz', member: first.name },
-    false,
-    members.map(({ name }) => name),
-  )
-  return problems.length === 0
-    ? preview
-    : {
-        ...preview,
-        understood: [
-          ...preview.understood,
+  const preview = previewOfArray(source, first.header, { kind: 'npz', member: first.name }, first.rising)
+  const unread =
+    problems.length === 0
+      ? []
+      : [
           `${problems.length} of ${members.length + problems.length} arrays cannot be read; the first: ${problems[0].sentence}`,
-        ],
-      }
+        ]
+  return {
+    ...preview,
+    understood: [...preview.understood, ...unread],
+    members: members.map(({ name }) => name),
+    arrays: members.map(({ name, header, rising }) => ({
+      dimensions: header.shape.length,
+      answer: proposedAnswer(header, { kind: 'npz', member: name }, rising),
+    })),
+  }
 }
 
-async function startsRising(source: ByteSource, header: NpyHeader): Promise<boolean> {
-  let rising = true
-  let before = Number.NEGATIVE_INFINITY
-  let first = 0
-  const few = { ...header, items: Math.min(header.items, FIRST_ITEMS) }
-  await readNpyValues(source, few, { onProgress: () => {}, shouldStop: () => false }, (values, count) => {
-    first = values[0]
-    for (let i = 0; i < count; i++) {
-      if (values[i] < before) rising = false
-      before = values[i]
-    }
-  })
-  return rising && header.items > 2 && before > first
+function proposedAnswer(
+  { shape }: NpyHeader,
+  which: Pick<ArrayAnswer, 'kind' | 'member'>,
+  rising: boolean,
+): ArrayAnswer {
+  const flat = shape.length === 1
+  return {
+    ...which,
+    content: flat ? (rising ? 'arrival' : null) : 'counts',
+    timeUnit: null,
+    tickSeconds: null,
+    binSeconds: null,
+    emitters: !flat && shape[0] > shape[1] ? 'columns' : 'rows',
+  }
 }
 
 function previewOfArray(
@@ -226,18 +219,11 @@ function previewOfArray(
   header: NpyHeader,
   which: Pick<ArrayAnswer, 'kind' | 'member'>,
   rising: boolean,
-  members: readonly string[],
 ): Preview {
   const flat = header.shape.length === 1
-  const answer: ArrayAnswer = {
-    ...which,
-    content: flat ? (rising ? 'arrival' : null) : 'counts',
-    timeUnit: null,
-    tickSeconds: null,
-    binSeconds: null,
-    emitters: !flat && header.shape[0] > header.shape[1] ? 'columns' : 'rows',
-  }
-  const questions = questionsOf(answer)
+  const answer = proposedAnswer(header, which, rising)
+  const guessedUnit = header.kind === 'f' ? 's' : 'ns'
+  const content = rising ? 'arrival' : 'counts'
   return {
     ...refused(source, ''),
     kind: which.kind,
@@ -249,11 +235,10 @@ function previewOfArray(
           : 'One dimension: arrival times or counts per bin.'
         : `The longer axis is taken as time, the other as ${Math.min(...header.shape)} emitters.`,
     ],
-    members,
     dimensions: header.shape.length,
     answer,
-    questions: flat && rising ? [{ key: 'content', text: QUESTIONS.content }, ...questions] : questions,
-    guessedUnit: header.kind === 'f' ? 's' : 'ns',
+    questions: questionsOf(answer, { unit: guessedUnit, content }, flat && rising),
+    guessedUnit,
     shapeSignature: [which.kind, header.dtype, header.shape.length, which.member ?? ''].join('|'),
     problem: null,
   }

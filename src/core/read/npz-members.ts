@@ -4,6 +4,7 @@ import { crc32 } from './crc32.ts'
 import { type NpyHeader, isNpy, readNpyHeader } from './npy-header.ts'
 import { failWhole, quoted, ReadFailure, type ReadProblem } from './read-problem.ts'
 import type { RowHooks } from './text-rows.ts'
+import { startsRising } from './starts-rising.ts'
 import { type ZipEntry, zipDataStart, zipDirectory } from './zip-directory.ts'
 
 /** Packed bytes unpacked at a time; DEFLATE makes at most 1032 times as many of them (RFC 1951: 258 bytes in 2 bits). */
@@ -17,6 +18,8 @@ const QUIET: RowHooks = { onProgress: () => {}, shouldStop: () => false }
 export interface NpzMember {
   readonly name: string
   readonly header: NpyHeader
+  /** Whether its first numbers look like arrival times. */
+  readonly rising: boolean
 }
 
 export interface NpzContents {
@@ -32,7 +35,10 @@ export async function npzMembers(source: ByteSource): Promise<NpzContents> {
   for (const entry of await zipDirectory(source)) {
     try {
       const head = await headOf(source, entry)
-      if (isNpy(head)) members.push({ name: entry.name, header: await memberHeader(source, entry, head) })
+      if (!isNpy(head)) continue
+      const header = await memberHeader(source, entry, head)
+      const rising = await startsRising(bytesSource(head, memberName(source, entry)), header)
+      members.push({ name: entry.name, header, rising })
     } catch (error) {
       if (!(error instanceof ReadFailure)) throw error
       problems.push(error.problem)

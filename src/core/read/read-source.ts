@@ -1,14 +1,11 @@
 import type { ByteSource } from './byte-source.ts'
 import { type ImportAnswer, missingAnswers } from './import-answer.ts'
-import { firstText } from './import-preview.ts'
 import { npzMember } from './npz-members.ts'
 import { readArray } from './read-array.ts'
 import { failWhole, ReadFailure } from './read-problem.ts'
 import type { ReadOutcome } from './read-record.ts'
 import { readText } from './read-text.ts'
 import type { RowHooks } from './text-rows.ts'
-import { commentMark, splitRow } from './text-shape.ts'
-import { decimalsOf } from './decimal.ts'
 
 const STOPPED: ReadOutcome = {
   ok: false,
@@ -52,7 +49,7 @@ export async function readSource(
 async function readByKind(source: ByteSource, answer: ImportAnswer, hooks: RowHooks) {
   if (answer.kind === 'text') {
     if (source.size === 0) failWhole(source.name, 'the file is empty. Choose a file with data.')
-    return readText(source, answer, hooks, await firstNumbers(source, answer))
+    return readText(source, answer, hooks)
   }
   if (answer.kind === 'npy') return readArray(source, answer, hooks)
   const half = (offset: number): RowHooks => ({
@@ -61,33 +58,4 @@ async function readByKind(source: ByteSource, answer: ImportAnswer, hooks: RowHo
   })
   const member = await npzMember(source, answer.member ?? '', half(0))
   return member === null ? null : readArray(member, answer, half(0.5))
-}
-
-/** Median step (the lower one of two: gaps make steps longer) and decimals of the time column as the answer reads it, from the first rows. */
-async function firstNumbers(source: ByteSource, answer: Extract<ImportAnswer, { kind: 'text' }>) {
-  const column = answer.columns.findIndex((role) => role === 'time' || role === 'arrival')
-  const text = await firstText(source)
-  if (column < 0) return { step: null, decimals: 0 }
-  const times: number[] = []
-  let decimals = 0
-  let headers = answer.headerLines
-  for (const line of text.split(/\r\n|\n|\r/)) {
-    if (line.trim() === '' || commentMark(line, answer.delimiter)) continue
-    if (headers > 0) {
-      headers--
-      continue
-    }
-    const field = splitRow(line, answer.delimiter)[column]
-    if (field === undefined || field === '') continue
-    const value = Number(answer.decimalComma ? field.replace(',', '.') : field)
-    if (Number.isNaN(value)) continue
-    times.push(value)
-    decimals = Math.max(decimals, decimalsOf(field))
-  }
-  const steps = times
-    .slice(1)
-    .map((time, i) => time - times[i])
-    .sort((a, b) => a - b)
-  const step = steps.length === 0 ? null : steps[Math.floor((steps.length - 1) / 2)]
-  return { step: step !== null && step > 0 ? step : null, decimals: Math.min(decimals, 12) }
 }

@@ -1,5 +1,8 @@
+import { columnRoles } from './column-roles.ts'
 import { decimalsOf } from './decimal.ts'
-import type { ColumnRole, TextAnswer, TimeUnit } from './import-answer.ts'
+import type { TextAnswer } from './import-answer.ts'
+import { binIn, isUnitWord, roleIn, tickIn, unitIn } from './said-by-name.ts'
+import { timeGrid } from './time-grid.ts'
 
 /** What the first lines of a text file look like. */
 export interface TextShape {
@@ -8,10 +11,7 @@ export interface TextShape {
   readonly rows: readonly (readonly string[])[]
   /** Step of the time column in its first rows, in the file's unit. */
   readonly step: number | null
-  /** Most decimals seen in the arrival column. */
-  readonly decimals: number
-  /** Roles and units were said by the file (header) rather than guessed. */
-  readonly timeUnitSaid: boolean
+  /** Whether names in the file say what columns hold; else it is guessed from the numbers. */
   readonly rolesSaid: boolean
 }
 
@@ -25,6 +25,8 @@ const DIALECTS: readonly { delimiter: TextAnswer['delimiter']; decimalComma: boo
   { delimiter: ' ', decimalComma: true },
 ]
 const LONGEST_NAME = 200
+const MOST_HEADER_LINES = 30
+const MOST_DECIMALS = 15
 const NUMBER = /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?$/
 const COMMA_NUMBER = /^[+-]?(?:\d+,?\d*|,\d+)(?:[eE][+-]?\d+)?$/
 
@@ -48,39 +50,6 @@ export function commentMark(line: string, delimiter: string): boolean {
   return /^\s*(#|%|\/\/)/.test(line) || (delimiter !== ';' && /^\s*;/.test(line))
 }
 
-/** Unit of time named in a column's name: `time (ms)`, `t/s`, `arrival_ns`; null when none is. */
-export function unitIn(name: string): TimeUnit | null {
-  const match =
-    /[([{/_\s,]\s*(ms|µs|μs|us|ns|s|sec|seconds|milliseconds|microseconds|nanoseconds|ticks?)\s*[)\]}]?\s*$/i.exec(
-      name.trim(),
-    )
-  if (match === null) return null
-  const word = match[1].toLowerCase()
-  if (word.startsWith('tick')) return 'ticks'
-  if (word === 'ms' || word.startsWith('milli')) return 'ms'
-  if (word === 'ns' || word.startsWith('nano')) return 'ns'
-  if (word === 'us' || word === 'µs' || word === 'μs' || word.startsWith('micro')) return 'us'
-  return 's'
-}
-
-/** Bin width named in a column's name: `counts per 10 ms`, `counts/bin (5 ms)`; null when none is. */
-export function binIn(name: string): number | null {
-  const match = /(\d+(?:[.,]\d+)?)\s*(ms|µs|μs|us|ns|s)\b/i.exec(name)
-  if (match === null) return null
-  const scale = { ms: 1e-3, µs: 1e-6, μs: 1e-6, us: 1e-6, ns: 1e-9, s: 1 }[match[2].toLowerCase()] ?? 1
-  return Number(match[1].replace(',', '.')) * scale
-}
-
-function roleIn(name: string): ColumnRole | null {
-  if (/arriv|macro\s*time|photon\s*time|time\s*tag|timestamp/i.test(name)) return 'arrival'
-  if (/gate|field|beam|shutter/i.test(name)) return 'gate'
-  if (/kcps|kHz|kilocounts/i.test(name)) return 'rate-kcps'
-  if (/\bcps\b|counts?\s*(per|\/)\s*s(ec(ond)?)?\b|\bHz\b|rate/i.test(name)) return 'rate-cps'
-  if (/^\s*(t|time|zeit|temps)(?![a-z])/i.test(name)) return 'time'
-  if (/count|intens|photons|signal|emitter|dot|trace/i.test(name)) return 'counts'
-  return null
-}
-
 /** Reads the first lines; null when no line is a row of numbers. */
 export function textShape(text: string): TextShape | null {
   const lines = text.split(/\r\n|\n|\r/)
@@ -100,8 +69,7 @@ function shapeIn(
   if (body.length === 0) return null
   const split = body.map((line) => splitRow(line, delimiter))
   const numeric = split.map((row) => row.every((field) => isNumber(field, decimalComma)))
-  let headerLines = 0
-  while (headerLines < Math.min(split.length, 30) && !numeric[headerLines]) headerLines++
+  const headerLines = linesBefore(split, numeric)
   if (headerLines === split.length) return null
   const rows = split.slice(headerLines)
   const width = rows[0].length
@@ -112,9 +80,10 @@ function shapeIn(
     .filter((line) => commentMark(line, delimiter))
     .at(-1)
     ?.replace(/^\s*(#|%|\/\/|;)+\s*/, '')
-  const named =
-    headerLines > 0 ? split[headerLines - 1] : comment === undefined ? [] : splitRow(comment, delimiter)
-  const header = named.length === width ? named.map((name) => name.replace(/^(["'])(.*)\1$/, '$2')) : []
+  const header =
+    headerLines > 0
+      ? headerOf(split.slice(0, headerLines), width)
+      : namesIn(comment === undefined ? [] : splitRow(comment, delimiter), width)
   return {
     score,
     shape: describe(
@@ -126,6 +95,36 @@ function shapeIn(
   }
 }
 
+/** Lines before the table: up to its first row of numbers, or up to a line of names below numbers of another width. */
+function linesBefore(split: readonly (readonly string[])[], numeric: readonly boolean[]): number {
+  const most = Math.min(split.length, MOST_HEADER_LINES)
+  let first = 0
+  while (first < most && !numeric[first]) first++
+  if (first === most) return split.length
+  for (let names = most - 2; names > first; names--) {
+    const width = split[names].length
+    if (numeric[names] || !numeric[names + 1] || split[names + 1].length !== width) continue
+    return split.some((row, i) => i < names && numeric[i] && row.length === width) ? first : names + 1
+  }
+  return first
+}
+
+function namesIn(fields: readonly string[], width: number): string[] {
+  return fields.length === width ? fields.map((name) => name.replace(/^(["'])(.*)\1$/, '$2')) : []
+}
+
+/** Names from the lines above the numbers; a last line of units only is joined to the names above it. */
+function headerOf(lines: readonly (readonly string[])[], width: number): string[] {
+  const last = lines[lines.length - 1]
+  const above = lines.length > 1 ? namesIn(lines[lines.length - 2], width) : []
+  if (above.length === 0 || last.length > width || !last.every((field) => field === '' || isUnitWord(field)))
+    return namesIn(last, width)
+  return above.map((name, i) => {
+    const unit = (last[i] ?? '').replace(/^[([{]\s*|\s*[)\]}]$/g, '')
+    return unit === '' ? name : `${name} (${unit})`
+  })
+}
+
 function describe(
   rows: readonly (readonly string[])[],
   header: readonly string[],
@@ -135,30 +134,15 @@ function describe(
   const width = rows[0].length
   const valuesOf = (column: number): number[] =>
     rows.map((row) => Number(row[column].replace(',', '.'))).filter((value) => !Number.isNaN(value))
-  const said = header.map(roleIn)
-  const first = valuesOf(0)
-  const rising = first.length > 1 && first.every((value, i) => i === 0 || value > first[i - 1])
-  const notFalling = first.every((value, i) => i === 0 || value >= first[i - 1])
-  const steps = first.slice(1).map((value, i) => value - first[i])
-  const step =
-    steps.length === 0 ? null : [...steps].sort((a, b) => a - b)[Math.floor((steps.length - 1) / 2)]
-  const even =
-    rising &&
-    step !== null &&
-    steps.filter((one) => Math.abs(one - step) < 0.3 * step).length >= 0.8 * steps.length
-  const whole = (column: number): boolean => valuesOf(column).every(Number.isInteger)
-  const columns = Array.from({ length: width }, (_, column): ColumnRole => {
-    const role = said[column] ?? null
-    if (role !== null && !(role === 'time' && column > 0 && said.indexOf('time') < column)) {
-      return role === 'time' && width === 1 ? 'arrival' : role
-    }
-    if (column === 0 && width > 1 && even) return 'time'
-    if (column === 0 && width === 1)
-      return notFalling && first.length > 2 && (first.at(-1) as number) > first[0] ? 'arrival' : 'counts'
-    return whole(column) ? 'counts' : 'rate-cps'
-  })
+  const columns = columnRoles(header, valuesOf, width)
   const timed = columns.findIndex((role) => role === 'time' || role === 'arrival')
-  const unit = timed < 0 ? null : unitIn(header[timed] ?? '')
+  const timeName = header[timed] ?? ''
+  const unit = unitIn(timeName)
+  // Fractions of a tick are not read as arrival times.
+  const tick =
+    columns[timed] === 'time' || valuesOf(Math.max(timed, 0)).every(Number.isInteger)
+      ? tickIn(timeName)
+      : null
   const decimals = timed < 0 ? 0 : rows.reduce((most, row) => Math.max(most, decimalsOf(row[timed])), 0)
   const counted = columns.findIndex((role) => role === 'counts')
   const binSeconds =
@@ -172,15 +156,15 @@ function describe(
         { length: width },
         (_, column) => header[column]?.slice(0, LONGEST_NAME) ?? `column ${column + 1}`,
       ),
-      timeUnit: unit,
-      tickSeconds: null,
+      timeUnit: unit ?? (tick === null ? null : 'ticks'),
+      tickSeconds: unit === null ? tick : null,
       binSeconds,
     },
     header,
     rows,
-    step: timed < 0 ? null : step,
-    decimals: Math.min(decimals, 12),
-    timeUnitSaid: unit !== null,
-    rolesSaid: said.some((role) => role !== null),
+    step: columns.includes('time')
+      ? (timeGrid(valuesOf(timed), 10 ** -Math.min(decimals, MOST_DECIMALS))?.step ?? null)
+      : null,
+    rolesSaid: header.some((name) => roleIn(name) !== null),
   }
 }

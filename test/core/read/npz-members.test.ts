@@ -41,6 +41,10 @@ describe('archives written by NumPy', () => {
       const source = bytesSource(fileOf(`npz ${word}`), 'a.npz')
       const preview = await previewSource(source)
       expect(preview.members).toEqual(['dots.npy', 'times.npy'])
+      expect(preview.arrays).toMatchObject([
+        { dimensions: 2, answer: { member: 'dots.npy', content: 'counts', emitters: 'rows' } },
+        { dimensions: 1, answer: { member: 'times.npy', content: 'arrival' } },
+      ])
       const read = await readGiven(source, COUNTS)
       expect(countsIn(read)).toEqual([
         [0, 1, 2, 3, 100],
@@ -52,6 +56,21 @@ describe('archives written by NumPy', () => {
 })
 
 describe('archives of others', () => {
+  it('the first array looks like arrival times when its numbers rise: proposed, and asked', async () => {
+    const times = npyFile('<i8', '4,', itemBytes('<i8', [5, 9, 9, 30]))
+    const preview = await previewSource(
+      bytesSource(zipSync({ 'times.npy': times, 'dots.npy': dots }), 'a.npz'),
+    )
+    expect(preview.answer).toMatchObject({ content: 'arrival' })
+    expect(preview.questions).toMatchObject([
+      { key: 'content', choices: ['arrival', 'counts'], guess: 'arrival', required: false },
+      { key: 'timeUnit', guess: 'ns', required: true },
+    ])
+    const counts = npyFile('<i8', '4,', itemBytes('<i8', [5, 9, 3, 30]))
+    const other = await previewSource(bytesSource(zipSync({ 'n.npy': counts }), 'a.npz'))
+    expect(other.answer).toMatchObject({ content: null })
+    expect(other.questions).toMatchObject([{ key: 'content', guess: 'counts', required: true }])
+  })
   it('passes over what is not an array', async () => {
     expect((await npzMembers(bytesSource(zipped, 'a.npz'))).members.map(({ name }) => name)).toEqual([
       'dots.npy',

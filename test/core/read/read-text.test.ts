@@ -42,6 +42,11 @@ describe('dialects', () => {
       const preview = await previewSource(source)
       expect(preview.questions.map((q) => q.key)).toEqual(['timeUnit'])
       expect(preview.guessedUnit).toBe('s')
+      expect(preview.questions[0]).toMatchObject({
+        choices: ['s', 'ms', 'us', 'ns', 'ticks'],
+        guess: 's',
+        required: true,
+      })
       expect(problemIn(await readGiven(source))).toContain(
         'it is not said the unit of its times. Answer that before opening the file.',
       )
@@ -109,7 +114,86 @@ describe('units', () => {
   })
 })
 
+describe('rounded numbers', () => {
+  const rows = (n: number, decimals: number, of: (i: number) => number): string =>
+    Array.from({ length: n }, (_, i) => `${(i / 30).toFixed(decimals)},${of(i)}`).join('\n')
+  it('times of 1/30 s printed to two decimals are even bins', async () => {
+    const outcome = await readGiven(textSource(`time (s),n\n${rows(3000, 2, (i) => i % 9)}\n`))
+    expect(countsIn(outcome)).toEqual([Array.from({ length: 3000 }, (_, i) => i % 9)])
+    const record = outcome.ok ? outcome.records[0].record : null
+    expect(record?.kind === 'trace' && record.binSeconds * 30).toBeCloseTo(1, 4)
+    expect(record?.kind === 'trace' && record.coverage).toBeNull()
+    expect(outcome.ok && outcome.notes).toEqual([])
+  })
+  it('a row missing among them is found', async () => {
+    const lines = rows(3000, 2, (i) => i % 9).split('\n')
+    lines.splice(1234, 2)
+    const outcome = await readGiven(textSource(`time (s),n\n${lines.join('\n')}\n`))
+    expect(outcome.ok && outcome.notes).toEqual([
+      '2 rows are missing in 1 places (first before line 1236); these bins are left empty and are not used.',
+    ])
+    const expected = Array.from({ length: 3000 }, (_, i) => (i === 1234 || i === 1235 ? 0 : i % 9))
+    expect(countsIn(outcome)).toEqual([expected])
+  })
+  it('rates per second of such bins become whole counts', async () => {
+    const text = `time (s),rate (cps)\n${rows(3000, 2, (i) => (i % 200) * 30)}\n`
+    const outcome = await readGiven(textSource(text))
+    expect(countsIn(outcome)).toEqual([Array.from({ length: 3000 }, (_, i) => i % 200)])
+    // A short record with coarse times knows its bin less well; counts are still found.
+    const short = await readGiven(textSource(`time (s),rate (cps)\n${rows(150, 2, (i) => (i % 100) * 30)}\n`))
+    expect(countsIn(short)).toEqual([Array.from({ length: 150 }, (_, i) => i % 100)])
+  })
+  it('the rounding of rates is said', async () => {
+    const outcome = await readGiven(textSource('time (ms),rate (cps)\n0,1201\n10,0\n20,299\n30,100\n'))
+    expect(countsIn(outcome)).toEqual([[12, 0, 3, 1]])
+    expect(outcome.ok && outcome.notes).toEqual([
+      'Rates times the bin miss whole counts by up to 0.010; they were rounded to whole counts.',
+    ])
+  })
+  it('clocks that jitter are taken as even, and the jitter is said', async () => {
+    const text = Array.from(
+      { length: 500 },
+      (_, i) => `${(i * 10 + (i % 3 === 1 ? 1.2 : 0)).toFixed(4)},${i % 5}`,
+    )
+    const outcome = await readGiven(textSource(`time (ms),n\n${text.join('\n')}\n`))
+    expect(countsIn(outcome)).toEqual([Array.from({ length: 500 }, (_, i) => i % 5)])
+    expect(outcome.ok && outcome.notes).toEqual([
+      'The times miss even steps by up to 12 % of a step; every row is taken as one whole bin.',
+    ])
+  })
+})
+
 describe('arrival times', () => {
+  it('fewer decimals are kept when the record is too long for all of them, and that is said', async () => {
+    const rows = Array.from({ length: 3000 }, (_, i) => (i * 40 + 0.1234567893).toFixed(11))
+    const outcome = await readGiven(textSource(`arrival (s)\n${rows.join('\n')}\n`))
+    const ticks = ticksIn(outcome)
+    const record = outcome.ok ? outcome.records[0].record : null
+    expect(record).toMatchObject({ kind: 'photons', tickSeconds: 1e-9 })
+    expect(ticks).toEqual(Array.from({ length: 3000 }, (_, i) => i * 40e9 + 123456789))
+    expect(outcome.ok && outcome.notes.join(' ')).toContain(
+      '3000 arrival times have more decimals than are kept and were rounded to 1e-9 s.',
+    )
+  })
+  it('decimals beyond a picosecond are rounded and said', async () => {
+    const outcome = await readGiven(textSource('arrival (ns)\n0.12345\n7000000.5\n'))
+    expect(ticksIn(outcome)).toEqual([123, 7_000_000_500])
+    expect(outcome.ok && outcome.notes.join(' ')).toContain(
+      '1 arrival times have more decimals than are kept',
+    )
+  })
+  it('a second column of arrival times is not dropped in silence', async () => {
+    const source = textSource('arrival 1 (us),arrival 2 (us)\n1,5\n2,6\n4,7\n')
+    expect((await previewSource(source)).understood.join(' ')).toContain(
+      'Only the first of 2 columns of arrival',
+    )
+    const outcome = await readGiven(source, { columns: ['arrival', 'arrival'] })
+    expect(outcome.ok && outcome.notes.join(' ')).toContain('Beside the arrival times, 1 column was not used')
+  })
+  it('ticks are the decimal, not a quotient near it', async () => {
+    const outcome = await readGiven(textSource('arrival (us)\n0.125\n1.250\n7.000\n'))
+    expect(outcome.ok && outcome.records[0].record).toMatchObject({ tickSeconds: 1e-9 })
+  })
   it('one column, unit said', async () => {
     const outcome = await readGiven(textSource('arrival (us)\n0.5\n1.25\n1.25\n7\n'))
     expect(ticksIn(outcome)).toEqual([50, 125, 125, 700])
@@ -131,7 +215,7 @@ describe('arrival times', () => {
     const text = `arrival (us)\n${rows.join('\n')}\n60000.5125\n60000.75\n`
     const outcome = await readGiven(textSource(text))
     expect(outcome.ok && outcome.notes.join(' ')).toMatch(
-      /^.*60002 photons\. 2 arrival times have more decimals/,
+      /^.*60002 photons\. 2 arrival times have more decimals than are kept/,
     )
   })
   it('says which columns are not used', async () => {
@@ -228,7 +312,7 @@ describe('bad input gets one sentence with the line', () => {
     [
       'uneven',
       'time_s,n\n0,1\n2,2\n4,3\n5,4\n6,5\n8,6\n10,7\n',
-      'line 5: the time advances by 0.500 steps of 2; bins must be even. If these are arrival times, read the column as such.',
+      'line 5: the time advances by 0.500 steps of 2; bins must be even. If these are arrival times, read the column as such; if the times are printed too coarsely, leave them out and give the bin width.',
     ],
     [
       'a step that changes',
@@ -249,7 +333,7 @@ describe('bad input gets one sentence with the line', () => {
     ['one row', 'time_s,n\n0,1\n', 'the time column does not advance in its first rows. '],
     [
       'gate',
-      'time_s,n,gate\n0,1,0\n1,1,2\n2,1,0\n',
+      'time_s,n,gate\n0,1,0\n1,1,2\n2,1,1\n',
       'line 3: a gate column holds 0 and 1, found 2. Correct the line',
     ],
   ]
@@ -286,6 +370,11 @@ describe('bad input gets one sentence with the line', () => {
 })
 
 describe('gates', () => {
+  it('columns of times and gates beyond the first are not dropped in silence', async () => {
+    const source = textSource('time_s,n,field,gate\n0,1,0,1\n1,5,1,0\n2,3,0,1\n')
+    const outcome = await readGiven(source, { columns: ['time', 'counts', 'gate', 'gate'] })
+    expect(outcome.ok && outcome.notes).toEqual(['1 more column of times or gates was not used.'])
+  })
   it('windows keep to the bins when the first steps are rounded', async () => {
     // Bins of 1/30 s printed to 3 decimals, from 5 s on.
     const rows = Array.from({ length: 3000 }, (_, i) => `${(5 + i / 30).toFixed(3)},1,${i >= 2000 ? 1 : 0}`)
