@@ -26,7 +26,7 @@ const DIALECTS = [
   [' ', '.'],
   ['   ', ','],
 ] as const
-const TIME_NAMES = ['time (s)', 't/ms', 'time_us', 'time', '"time (s)"']
+const TIME_NAMES = ['time (s)', 't/ms', 'time_us', 'time', '"time (s)"', 'time (min)', 'timestamp/s']
 
 function textTable(random: RandomSource): GoodFile {
   const [delimiter, point] = oneOf(random, DIALECTS)
@@ -37,6 +37,8 @@ function textTable(random: RandomSource): GoodFile {
   const gate = below(random, 5) === 0
   const timed = below(random, 5) > 0
   const start = below(random, 3) * 7
+  // The last one falls between two printable times.
+  const step = oneOf(random, [0.01, 0.01, 0.02, 0.1, 1 / 30])
   const number = (value: number | string): string => String(value).replace('.', point)
   const lines: string[] = []
   if (below(random, 3) === 0) lines.push(oneOf(random, ['# made today', '% x', '// notes', '']))
@@ -51,7 +53,7 @@ function textTable(random: RandomSource): GoodFile {
   for (let i = 0, at = 0; i < rows; i++, at += below(random, 25) === 0 ? 3 : 1) {
     const counts = Array.from({ length: width }, () => below(random, 300) * (rate ? 100 : 1))
     const row = [
-      ...(timed ? [(start + at * 0.01).toFixed(2)] : []),
+      ...(timed ? [(start + at * step).toFixed(2)] : []),
       ...counts,
       ...(gate ? [i % 3 === 0 ? 1 : 0] : []),
     ]
@@ -65,7 +67,8 @@ function textTable(random: RandomSource): GoodFile {
 }
 
 function textArrivals(random: RandomSource): GoodFile {
-  const lines = below(random, 2) === 0 ? [oneOf(random, ['arrival (us)', 'timestamp', 'time_ns'])] : []
+  const lines =
+    below(random, 2) === 0 ? [oneOf(random, ['arrival (us)', 'timestamp', 'time_ns', 'arrival / ps'])] : []
   const decimals = below(random, 4)
   for (let i = 0, time = 0; i < 5 + below(random, 60); i++) {
     time += random.uniform() * 200
@@ -78,9 +81,10 @@ function textArrivals(random: RandomSource): GoodFile {
 const SAVED = new Date(2020, 0, 1)
 
 const TYPES = [
+  '|b1',
   '|i1',
   '|u1',
-  ...['i2', 'u2', 'i4', 'u4', 'i8', 'f4', 'f8'].flatMap((type) => [`<${type}`, `>${type}`]),
+  ...['i2', 'u2', 'i4', 'u4', 'i8', 'u8', 'f2', 'f4', 'f8'].flatMap((type) => [`<${type}`, `>${type}`]),
 ]
 
 function array(random: RandomSource): Uint8Array {
@@ -89,13 +93,14 @@ function array(random: RandomSource): Uint8Array {
     let time = 0
     const times = Array.from(
       { length: 3 + below(random, 40) },
-      () => (time = Math.min(120, time + below(random, 5))),
+      () => (time = Math.min(descr === '|b1' ? 1 : 120, time + below(random, 5))),
     )
     return npyFile(descr, `${times.length},`, itemBytes(descr, times))
   }
   const rows = 1 + below(random, 4)
   const columns = 1 + below(random, 30)
-  const values = Array.from({ length: rows * columns }, () => below(random, 120))
+  const most = descr === '|b1' ? 2 : 120
+  const values = Array.from({ length: rows * columns }, () => below(random, most))
   const shape = rows === 1 ? `${columns},` : `${rows}, ${columns}`
   return npyFile(descr, shape, itemBytes(descr, values), below(random, 2) === 0)
 }

@@ -19,6 +19,30 @@ const MAGIC = [0x93, 0x4e, 0x55, 0x4d, 0x50, 0x59]
 /** Longest header read; the format itself allows more, for structured types this program does not read. */
 const LONGEST_HEADER = 1 << 16
 
+const ENTRY =
+  /\s*(['"])(descr|fortran_order|shape)\1\s*:\s*(?:'([^'\\]*)'|(True|False)|\(([^()]*)\))\s*(?:,|(?=\}))/y
+
+/** The three entries of the header, a Python dictionary that holds nothing else; null when it is anything else. */
+function entriesOf(text: string): { descr: string; order: string; shapeText: string } | null {
+  const body = text.trim()
+  if (!body.startsWith('{') || !body.endsWith('}')) return null
+  const found = new Map<string, RegExpExecArray>()
+  ENTRY.lastIndex = 1
+  for (let at = 1; found.size < 3; at = ENTRY.lastIndex) {
+    ENTRY.lastIndex = at
+    const entry = ENTRY.exec(body)
+    if (entry === null || found.has(entry[2])) return null
+    found.set(entry[2], entry)
+  }
+  if (body.slice(ENTRY.lastIndex, -1).trim() !== '') return null
+  const descr = found.get('descr')?.[3]
+  const order = found.get('fortran_order')?.[4]
+  const shapeText = found.get('shape')?.[5]
+  return descr === undefined || order === undefined || shapeText === undefined
+    ? null
+    : { descr, order, shapeText }
+}
+
 export function isNpy(bytes: Uint8Array): boolean {
   return MAGIC.every((byte, i) => bytes[i] === byte)
 }
@@ -55,18 +79,17 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
   }
   const bytes = await source.read(headerStart, headerStart + length)
   const text = asciiText(bytes, 0, bytes.length)
-  const descr = /'descr'\s*:\s*'([^']*)'/.exec(text)?.[1]
-  const order = /'fortran_order'\s*:\s*(True|False)/.exec(text)?.[1]
-  const shapeText = /'shape'\s*:\s*\(([^)]*)\)/.exec(text)?.[1]
-  if (descr === undefined && /'descr'\s*:\s*\[/.test(text))
+  const entries = entriesOf(text)
+  if (entries === null && /'descr'\s*:\s*\[/.test(text))
     failAtByte(source.name, headerStart, 'structured arrays are not read. Save one field as a plain array.')
-  if (descr === undefined || order === undefined || shapeText === undefined) {
+  if (entries === null) {
     failAtByte(
       source.name,
       headerStart,
-      'the header lacks descr, fortran_order or shape. The file is damaged; copy it again or save it anew.',
+      'the header is not a list of descr, fortran_order and shape. The file is damaged; copy it again or save it anew.',
     )
   }
+  const { descr, order, shapeText } = entries
   const type = /^([<>|=])([iufb])([1248])$/.exec(descr)
   if (type === null || (type[2] === 'f' && type[3] === '1') || (type[2] === 'b' && type[3] !== '1')) {
     failAtByte(
@@ -78,13 +101,14 @@ export async function readNpyHeader(source: ByteSource): Promise<NpyHeader> {
   const parts = shapeText.split(',').map((part) => part.trim())
   // `(3,)` and `()`.
   if (parts[parts.length - 1] === '') parts.pop()
-  if (!parts.every((part) => /^\d{1,15}$/.test(part)))
+  if (!parts.every((part) => /^\d{1,15}L?$/.test(part)))
     failAtByte(
       source.name,
       headerStart,
       `the shape ${quoted(`(${shapeText})`)} is not a list of whole numbers. The file is damaged; copy it again or save it anew.`,
     )
-  const shape = parts.map(Number)
+  // Python 2 wrote `3L`.
+  const shape = parts.map((part) => Number.parseInt(part, 10))
   if (shape.length === 0 || shape.length > 2)
     failWhole(
       source.name,

@@ -9,6 +9,15 @@ export function npyFile(descr: string, shape: string, data: Uint8Array, fortran 
   return bytes
 }
 
+/** Whole numbers of 0 to 2048 in half precision (IEEE 754): those are exact. */
+function halfBits(value: number): number {
+  if (!(Number.isInteger(value) && value >= 0 && value <= 2048))
+    throw new RangeError(`${value} is not written in half precision`)
+  if (value === 0) return 0
+  const exponent = Math.floor(Math.log2(value))
+  return ((exponent + 15) << 10) | ((value / 2 ** exponent - 1) * 1024)
+}
+
 /** Numbers as the bytes of a NumPy type. Values beyond the type wrap or round as a DataView does. */
 export function itemBytes(descr: string, values: readonly number[]): Uint8Array {
   const size = Number(descr[2])
@@ -16,7 +25,8 @@ export function itemBytes(descr: string, values: readonly number[]): Uint8Array 
   const little = descr[0] !== '>'
   values.forEach((value, i) => {
     const at = i * size
-    if (descr[1] === 'f' && size === 4) view.setFloat32(at, value, little)
+    if (descr[1] === 'f' && size === 2) view.setUint16(at, halfBits(value), little)
+    else if (descr[1] === 'f' && size === 4) view.setFloat32(at, value, little)
     else if (descr[1] === 'f') view.setFloat64(at, value, little)
     else if (size === 1) view.setUint8(at, value)
     else if (size === 2) view.setUint16(at, value, little)

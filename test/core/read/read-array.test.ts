@@ -59,6 +59,11 @@ describe('files written by NumPy', () => {
   })
 })
 
+it('sizes as Python 2 wrote them', async () => {
+  const source = bytesSource(npyFile('<i4', '3L,', itemBytes('<i4', [1, 2, 3])), 'a.npy')
+  expect(countsIn(await readGiven(source, COUNTS))).toEqual([[1, 2, 3]])
+})
+
 describe('refused with byte and advice', () => {
   const REFUSED: readonly (readonly [string, string])[] = [
     ['structured', 'byte 10: structured arrays are not read. Save one field as a plain array.'],
@@ -133,6 +138,14 @@ describe('refused with byte and advice', () => {
       npyFile('<i4', 'three', data),
       'the shape “(three)” is not a list of whole numbers. The file is damaged',
     ],
+    ['negative shape', npyFile('<i4', '-3,', data), 'the shape “(-3,)” is not a list of whole numbers'],
+    [
+      'two headers run into each other',
+      npyFile("<u4', 'fortran_order': False, 's', 'descr': '<i4", '3,', data),
+      'the header is not a list of descr, fortran_order and shape. The file is damaged',
+    ],
+    ['an entry twice', npyFile("<u4', 'descr': '<i4", '3,', data), 'the header is not a list of descr'],
+    ['an entry more', npyFile("<i4', 'more': '", '3,', data), 'the header is not a list of descr'],
     ['shape with holes', npyFile('<i4', ',,3', data), 'the shape “(,,3)” is not a list of whole numbers'],
   ]
   for (const [word, bytes, sentence] of CASES) {
