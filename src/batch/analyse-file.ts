@@ -102,5 +102,9 @@ function answered(
       )
     }
   }
+  const single = answer.kind === 'text' && answer.columns.length === 1 && answer.columns[0] === 'arrival'
+  if (single || (answer.kind !== 'text' && answer.content === 'arrival')) {
+    notes.push('the numbers never decrease and were taken as arrival times')
+  }
   return { answer: { ...answer, timeUnit, binSeconds: answer.binSeconds ?? options.countsBinSeconds }, notes }
 }

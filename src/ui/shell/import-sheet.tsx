@@ -272,6 +272,8 @@ function TextFields({ answer, preview, change }: FieldsProps<TextAnswer>) {
 type Arrays = Exclude<ImportAnswer, TextAnswer>
 
 function ArrayFields({ answer, preview, change }: FieldsProps<Arrays>) {
+  const dimensions =
+    preview.arrays[preview.members.indexOf(answer.member ?? '')]?.dimensions ?? preview.dimensions
   return (
     <>
       {preview.members.length > 1 ? (
@@ -279,7 +281,11 @@ function ArrayFields({ answer, preview, change }: FieldsProps<Arrays>) {
           label="Array"
           value={answer.member ?? ''}
           choices={preview.members.map((member) => ({ value: member, label: member }))}
-          onChange={(member) => change({ member })}
+          onChange={(member) => {
+            // Each array of an archive has its own proposal.
+            const own = preview.arrays[preview.members.indexOf(member)]
+            change(own?.answer ?? { member })
+          }}
         />
       ) : null}
       <ChoiceField
@@ -292,7 +298,7 @@ function ArrayFields({ answer, preview, change }: FieldsProps<Arrays>) {
         ]}
         onChange={(content) => change({ content: content === 'ask' ? null : content })}
       />
-      {preview.dimensions === 2 ? (
+      {dimensions === 2 ? (
         <ChoiceField
           label="One emitter per"
           value={answer.emitters}
