@@ -94,9 +94,9 @@ export function liveReading(
       ),
       line(
         'levels',
-        'Levels, off → on',
+        'Levels',
         `${kcps(levelled.offCounts)} → ${kcps(levelled.onCounts)}`,
-        'background included',
+        'off → on, background included',
         'baseline',
       ),
       line(

@@ -11,7 +11,7 @@ export const FONT_SIZE = 11
 const LEFT = 52
 const TOP = 10
 const BOTTOM = 34
-const GAP = 10
+const GAP = 14
 const RIGHT = 14
 
 export function upperLayout(width: number, height: number): UpperLayout {
