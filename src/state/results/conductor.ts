@@ -202,7 +202,8 @@ export function conductor(
     if (results.getState().thresholds.status !== 'arrived') return
     if (keys.rows !== rowsKey) {
       rowsKey = keys.rows
-      results.setState({ rows: new Map(), rowsWithIntervals: 0, goodness: {} })
+      // Settled numbers of other choices must not pass for present ones, even at the same threshold.
+      results.setState({ rows: new Map(), rowsWithIntervals: 0, goodness: {}, settled: { status: 'none' } })
     }
     void runRows()
     const at = threshold()
